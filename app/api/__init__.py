@@ -1,0 +1,1 @@
+"""JSON under /api/v1. Request models only document; intake alone refuses."""

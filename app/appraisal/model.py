@@ -1,0 +1,117 @@
+"""What an appraisal takes in and gives back. Values only."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from fractions import Fraction
+from typing import NamedTuple
+
+from app.appraisal.sheet import EventIs, FollowUp
+from app.measures.needed import RoundedNeeded, Segment
+from app.measures.registry import EffectMethod, Measure, NoDifferenceTest, RiskMethod
+from app.printed.claims import Claim
+from app.reconstruct.arm import ArmFits
+from app.reconstruct.tables import Fits
+
+
+@dataclass(frozen=True, slots=True)
+class OutcomeInput:
+    """One outcome: what is counted, and what is claimed of it."""
+
+    claims: tuple[Claim, ...]
+    event_is: EventIs = "unwanted"
+    horizon: str = ""
+    follow_up: FollowUp = "not_said"
+    confidence_level: float = 0.95
+
+
+@dataclass(frozen=True, slots=True)
+class AppraisalInput:
+    """One paper: a list of outcomes, each a list of claims."""
+
+    outcomes: tuple[OutcomeInput, ...]
+
+
+class Range(NamedTuple):
+    """Smallest and largest value over all tables that fit; equal where one table fits. Nan if undefined."""
+
+    low: float
+    high: float
+
+    @property
+    def one(self) -> bool:
+        """Whether there is one value only."""
+        return self.low == self.high
+
+
+class IntervalRange(NamedTuple):
+    """Lower and upper limit, each as its range over the tables that fit."""
+
+    low: Range
+    high: Range
+
+
+@dataclass(frozen=True, slots=True)
+class MeasureAppraisal:
+    """One measure over the tables that fit, the default method first."""
+
+    estimate: Range
+    intervals: tuple[tuple[EffectMethod, IntervalRange], ...]
+
+    @property
+    def default(self) -> IntervalRange:
+        """The interval by the default method."""
+        return next(interval for method, interval in self.intervals if method.default)
+
+
+@dataclass(frozen=True, slots=True)
+class RiskAppraisal:
+    """One arm: the counts that fit, and the risk over them (None where too little is known)."""
+
+    fits: ArmFits
+    risk: Range | None = None
+    intervals: tuple[tuple[RiskMethod, IntervalRange], ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class NeededAppraisal:
+    """Number needed to treat: the values nearest and furthest from 1, and the inverted interval.
+
+    `exact` and `rounded` hold one value where one table fits or all agree in direction, else are
+    empty: across no difference there is no one range. `segments` come from the hull of the interval.
+    """
+
+    exact: tuple[Fraction, Fraction] | None
+    rounded: tuple[RoundedNeeded, RoundedNeeded] | None
+    direction: str
+    segments: tuple[Segment, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Note:
+    """Something a reader must know: a slug for its sentence, and the evidence."""
+
+    slug: str
+    evidence: Mapping[str, object] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, slots=True)
+class OutcomeAppraisal:
+    """All that follows from one outcome's claims."""
+
+    input: OutcomeInput
+    intervention: RiskAppraisal
+    comparator: RiskAppraisal
+    fits: Fits | None
+    measures: Mapping[Measure, MeasureAppraisal]
+    needed: NeededAppraisal | None
+    tests: tuple[tuple[NoDifferenceTest, Range], ...]
+    notes: tuple[Note, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Appraisal:
+    """The outcomes appraised, in the order given."""
+
+    outcomes: tuple[OutcomeAppraisal, ...]

@@ -1,0 +1,84 @@
+"""What a reader must be told beside the figures: slugs with evidence, most consequential first."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+
+import numpy as np
+
+from app.appraisal.model import MeasureAppraisal, Note, OutcomeInput
+from app.measures.registry import Measure
+from app.reconstruct.arm import ArmFits
+from app.reconstruct.tables import Fits
+
+ODDS_PART = 1.10
+"""Odds ratio and risk ratio this many times apart are noted (common practice, no source)."""
+
+
+def _arm_notes(arm: ArmFits) -> list[Note]:
+    evidence: dict[str, object] = {"arm": arm.arm, "total": arm.total}
+    if arm.status == "contradiction":
+        return [Note("contradict_each_other", {**evidence, "run": arm.runs[0] if arm.runs else None})]
+    if arm.status == "none_fits":
+        return [
+            Note(
+                "no_count_fits",
+                {
+                    **evidence,
+                    "nearest": arm.nearest,
+                    "other_totals": arm.other_totals,
+                    "if_truncated": arm.if_truncated,
+                },
+            )
+        ]
+    notes = []
+    if arm.if_truncated is not None:
+        notes.append(Note("more_if_truncated", {**evidence, "run": arm.if_truncated}))
+    if arm.last_digit:
+        notes.append(Note("last_digit_differs", {**evidence, "run": arm.runs[0]}))
+    return notes
+
+
+def _empty_cells(fits: Fits) -> list[Note]:
+    table = fits.tables
+    none_first, none_second = (bool(np.all(x == 0)) for x in (table.events_intervention, table.events_comparator))
+    if none_first and none_second:
+        return [Note("no_events_at_all")]
+    if none_second:
+        return [Note("no_events_in_comparator")]
+    if none_first:
+        return [Note("no_events_in_intervention")]
+    others = table.complement()
+    if np.all(others.events_intervention == 0) and np.all(others.events_comparator == 0):
+        return [Note("all_have_the_event")]
+    return []
+
+
+def _odds_part(measures: Mapping[Measure, MeasureAppraisal]) -> list[Note]:
+    odds, ratio = (measures[m].estimate for m in ("odds_ratio", "risk_ratio"))
+    with np.errstate(all="ignore"):
+        apart = np.exp(np.abs(np.log(np.array(odds)) - np.log(np.array(ratio))))
+    if np.all(np.isfinite(apart)) and np.max(apart) > ODDS_PART:
+        return [Note("odds_part_from_risk", {"odds_ratio": odds, "risk_ratio": ratio})]
+    return []
+
+
+def notes_on(
+    given: OutcomeInput,
+    intervention: ArmFits,
+    comparator: ArmFits,
+    fits: Fits | None,
+    measures: Mapping[Measure, MeasureAppraisal] | None,
+) -> tuple[Note, ...]:
+    """Notes on one outcome."""
+    notes = _arm_notes(intervention) + _arm_notes(comparator)
+    if fits is None or measures is None:
+        return tuple(notes)
+    if not fits.complete:
+        notes.append(Note("too_many_tables", {"count": fits.count}))
+    notes += _empty_cells(fits)
+    if given.follow_up != "fixed":
+        notes.append(Note("naive_follow_up", {"follow_up": given.follow_up}))
+    if not given.horizon:
+        notes.append(Note("time_not_stated"))
+    return tuple(notes + _odds_part(measures))

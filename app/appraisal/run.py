@@ -1,0 +1,114 @@
+"""appraise(input): the one entrance for pages, API and command line."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+
+import numpy as np
+
+from app.appraisal.effects import Effects, effects_of, risk_of
+from app.appraisal.model import (
+    Appraisal,
+    AppraisalInput,
+    IntervalRange,
+    MeasureAppraisal,
+    NeededAppraisal,
+    OutcomeAppraisal,
+    OutcomeInput,
+    Range,
+    RiskAppraisal,
+)
+from app.appraisal.notes import notes_on
+from app.measures.fourfold import Floats, Fourfold
+from app.measures.interval import Interval
+from app.measures.needed import direction_of, needed_segments, rounded_needed
+from app.reconstruct.arm import ArmFits, arm_fits
+from app.reconstruct.tables import ends, tables_that_fit
+
+
+def range_of(values: Floats) -> Range:
+    """Smallest and largest of the values; nan if any is undefined."""
+    return Range(float(np.min(values)), float(np.max(values)))
+
+
+def _interval_range(interval: Interval) -> IntervalRange:
+    return IntervalRange(range_of(interval.low), range_of(interval.high))
+
+
+def _risk(fits: ArmFits, confidence_level: float) -> RiskAppraisal:
+    if not fits.usable:
+        return RiskAppraisal(fits)
+    points = ends(fits)
+    result = risk_of(points[:, 0], points[:, 1], confidence_level)
+    intervals = tuple((method, _interval_range(interval)) for method, interval in result.intervals)
+    return RiskAppraisal(fits, range_of(result.estimate), intervals)
+
+
+def exact_difference(table: Fourfold, index: int) -> Fraction:
+    """The risk difference of one of the tables as a fraction."""
+    a, n1, c, n2 = (
+        int(x.flat[index])
+        for x in (
+            table.events_intervention,
+            table.total_intervention,
+            table.events_comparator,
+            table.total_comparator,
+        )
+    )
+    return Fraction(a, n1) - Fraction(c, n2)
+
+
+def _needed(effects: Effects, unwanted: bool) -> NeededAppraisal:
+    result = effects.measures["risk_difference"]
+    _, interval = result.default
+    hull = Interval(np.asarray(np.min(interval.low)), np.asarray(np.max(interval.high)))
+    segments = needed_segments(hull, unwanted)
+    first, last = (
+        exact_difference(effects.table, int(index)) for index in (np.argmin(result.estimate), np.argmax(result.estimate))
+    )
+    if first * last <= 0:
+        direction = "none" if first == last == 0 else "either"
+        return NeededAppraisal(None, None, direction, segments)
+    sense = direction_of(first, unwanted)
+    near, far = sorted((abs(1 / first), abs(1 / last)))
+    return NeededAppraisal((near, far), (rounded_needed(near, sense), rounded_needed(far, sense)), sense, segments)
+
+
+def appraise_outcome(given: OutcomeInput) -> OutcomeAppraisal:
+    """All that follows from one outcome's claims."""
+    first, second = arm_fits("intervention", given.claims), arm_fits("comparator", given.claims)
+    fits = tables_that_fit(first, second)
+    arms = _risk(first, given.confidence_level), _risk(second, given.confidence_level)
+    if fits is None:
+        return OutcomeAppraisal(given, *arms, None, {}, None, (), notes_on(given, first, second, None, None))
+    effects = effects_of(fits.tables, given.confidence_level)
+    measures = {
+        measure: MeasureAppraisal(
+            range_of(result.estimate),
+            tuple((method, _interval_range(interval)) for method, interval in result.intervals),
+        )
+        for measure, result in effects.measures.items()
+    }
+    return OutcomeAppraisal(
+        given,
+        *arms,
+        fits,
+        measures,
+        _needed(effects, given.event_is == "unwanted"),
+        tuple((result.test, _p_range(result.p, effects)) for result in effects.tests),
+        notes_on(given, first, second, fits, measures),
+    )
+
+
+def _p_range(p: Floats, effects: Effects) -> Range:
+    """Range of p; up to 1 where the ends of the runs lie on both sides of no difference."""
+    found = range_of(p)
+    difference = effects.measures["risk_difference"].estimate
+    if p.size > 1 and np.min(difference) < 0.0 < np.max(difference):
+        return Range(found.low, 1.0)
+    return found
+
+
+def appraise(given: AppraisalInput) -> Appraisal:
+    """Appraise every outcome of a paper."""
+    return Appraisal(tuple(appraise_outcome(outcome) for outcome in given.outcomes))

@@ -1,0 +1,1 @@
+"""The command line: the only reader of argv, and the only room that prints."""

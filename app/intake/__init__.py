@@ -1,0 +1,1 @@
+"""Strings in (form, JSON), input out, or every problem at once. The only room that words a refusal."""

@@ -1,0 +1,194 @@
+"""A sheet as typed -> AppraisalInput, with every problem beside it. What is sound goes on regardless."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+from typing import cast
+
+from app.appraisal.fields import (
+    NUMBER_FIELDS,
+    TEXT_LIMIT,
+    ArmPart,
+    NumberField,
+    arm_field,
+    arm_name_field,
+    outcome_field,
+)
+from app.appraisal.model import AppraisalInput, OutcomeInput
+from app.appraisal.sheet import (
+    CONFIDENCE_LEVELS,
+    EVENT_IS,
+    FOLLOW_UP,
+    EventIs,
+    FollowUp,
+    Sheet,
+    TypedArm,
+    TypedOutcome,
+)
+from app.errors import FieldProblem, PrintedProblem
+from app.intake.problems import printed_problem, problem
+from app.measures.fourfold import LARGEST_TOTAL
+from app.printed.claims import ARMS, Claim
+from app.printed.number import PrintedNumber, read_number
+from app.reconstruct.arm import arm_fits
+
+
+@dataclass(frozen=True, slots=True)
+class Gathered:
+    """The input that can be appraised, every refused field, and numbers read otherwise than they look."""
+
+    input: AppraisalInput
+    problems: tuple[FieldProblem, ...]
+    read_as: Mapping[str, PrintedNumber]
+
+
+def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
+    """The current sheet with the posted fields in place of its own; what is not posted stays."""
+
+    def text(name: str, old: str) -> str:
+        return form.get(name, old)
+
+    def choice(name: str, allowed: tuple[str, ...], old: str) -> str:
+        value = form.get(name, old)
+        return value if value in allowed else old
+
+    outcomes = []
+    for i, outcome in enumerate(current.outcomes):
+        arms = tuple(
+            TypedArm(**{f.part: text(arm_field(i, j, f.part), getattr(arm, f.part)) for f in NUMBER_FIELDS})
+            for j, arm in enumerate(outcome.arms)
+        )
+        outcomes.append(
+            TypedOutcome(
+                name=text(outcome_field(i, "name"), outcome.name),
+                counted=text(outcome_field(i, "counted"), outcome.counted),
+                event_is=cast(EventIs, choice(outcome_field(i, "event_is"), EVENT_IS, outcome.event_is)),
+                horizon=text(outcome_field(i, "horizon"), outcome.horizon),
+                follow_up=cast(FollowUp, choice(outcome_field(i, "follow_up"), FOLLOW_UP, outcome.follow_up)),
+                arms=arms,
+            )
+        )
+    return replace(
+        current,
+        title=text("title", current.title),
+        reference=text("reference", current.reference),
+        arms=tuple(text(arm_name_field(j), name) for j, name in enumerate(current.arms)),
+        outcomes=tuple(outcomes),
+        confidence_level=choice("confidence_level", CONFIDENCE_LEVELS, current.confidence_level),
+    )
+
+
+def _texts(sheet: Sheet) -> list[FieldProblem]:
+    named = [("title", sheet.title), ("reference", sheet.reference)]
+    named += [(arm_name_field(j), name) for j, name in enumerate(sheet.arms)]
+    for i, outcome in enumerate(sheet.outcomes):
+        named += [(outcome_field(i, part), getattr(outcome, part)) for part in ("name", "counted", "horizon")]
+    return [problem(name, "text_too_long", limit=TEXT_LIMIT) for name, value in named if len(value) > TEXT_LIMIT]
+
+
+def _number(name: str, spec: NumberField, typed: str) -> PrintedNumber | FieldProblem:
+    try:
+        number = read_number(typed, spec.kind)
+    except PrintedProblem as refused:
+        return printed_problem(name, refused, spec.example)
+    if spec.kind == "count" and number.value > LARGEST_TOTAL:
+        return problem(name, "count_too_large")
+    if spec.kind == "percentage" and number.value > 100:
+        return problem(name, "percentage_above_100")
+    if spec.part == "total" and number.value == 0:
+        return problem(name, "total_is_zero", example=spec.example)
+    return number
+
+
+def _across(outcome: int, arm: int, numbers: Mapping[ArmPart, PrintedNumber]) -> list[FieldProblem]:
+    """Problems between the boxes of one arm: parts larger than the whole, parts that do not add up."""
+    count = {part: int(number.value) for part, number in numbers.items() if part != "percentage"}
+    events, others, total = (count.get(part) for part in ("events", "non_events", "total"))
+    if total is None:
+        if events == 0 and others == 0:
+            return [problem(arm_field(outcome, arm, "events"), "total_is_zero", example="418")]
+        return []
+    found = [
+        problem(arm_field(outcome, arm, part), "count_exceeds_total", part=value, total=total)
+        for part, value in (("events", events), ("non_events", others))
+        if value is not None and value > total
+    ]
+    if not found and events is not None and others is not None and events + others != total:
+        field = arm_field(outcome, arm, "total")
+        found.append(
+            problem(field, "totals_do_not_add", events=events, non_events=others, sum=events + others, total=total)
+        )
+    return found
+
+
+_ONE_MORE = "One more number is needed."
+_NEEDED: dict[frozenset[str], tuple[ArmPart, str, str]] = {
+    frozenset(): ("events", "This arm is still empty.", "Type any two of its numbers."),
+    frozenset({"events"}): ("total", _ONE_MORE, "Type how many were analysed, or the percentage."),
+    frozenset({"non_events"}): ("total", _ONE_MORE, "Type how many were analysed, or the percentage."),
+    frozenset({"total"}): ("events", _ONE_MORE, "Type how many had the event, or the percentage."),
+    frozenset({"percentage"}): ("total", _ONE_MORE, "Type how many were analysed, or how many had the event."),
+}
+_UNBOUNDED: tuple[ArmPart, str, str] = ("total", "These two allow almost any total.", "Type how many were analysed.")
+
+
+def needs(sheet: Sheet, outcome: int, gathered: Gathered) -> tuple[FieldProblem, ...]:
+    """What the arms of one outcome still lack before anything follows from them.
+
+    Nothing is asked of a sheet that is empty, nor of an arm that has a refused box.
+    """
+    typed = sheet.outcomes[outcome].arms
+    have = [frozenset(spec.part for spec in NUMBER_FIELDS if getattr(arm, spec.part).strip()) for arm in typed]
+    if not any(have):
+        return ()
+    refused = {problem.field for problem in gathered.problems}
+    found = []
+    for j, (arm, parts) in enumerate(zip(ARMS, have, strict=False)):
+        if any(arm_field(outcome, j, spec.part) in refused for spec in NUMBER_FIELDS):
+            continue
+        if arm_fits(arm, gathered.input.outcomes[outcome].claims).status in ("nothing", "too_little"):
+            part, what, how = _NEEDED.get(parts, _UNBOUNDED)
+            found.append(problem(arm_field(outcome, j, part), "more_needed", what=what, how=how))
+    return tuple(found)
+
+
+def gather(sheet: Sheet) -> Gathered:
+    """Read every box of a sheet.
+
+    A box that cannot be read makes no claim and one problem; the others go on. Boxes of one arm that
+    contradict each other outright make a problem, and that arm no claims.
+    """
+    problems = _texts(sheet)
+    read_as: dict[str, PrintedNumber] = {}
+    outcomes = []
+    for i, outcome in enumerate(sheet.outcomes):
+        claims: list[Claim] = []
+        for j, (arm, typed) in enumerate(zip(ARMS, outcome.arms, strict=False)):
+            numbers: dict[ArmPart, PrintedNumber] = {}
+            mine: list[Claim] = []
+            refused = []
+            for spec in NUMBER_FIELDS:
+                value = getattr(typed, spec.part)
+                if not value.strip():
+                    continue
+                name = arm_field(i, j, spec.part)
+                read = _number(name, spec, value)
+                if isinstance(read, FieldProblem):
+                    refused.append(read)
+                    continue
+                numbers[spec.part] = read
+                if read.grouped:
+                    read_as[name] = read
+                unit = "percent" if spec.kind == "percentage" else "people"
+                mine.append(Claim(name, spec.quantity, arm, read, unit))  # type: ignore[arg-type]
+            across = _across(i, j, numbers)
+            problems += refused + across
+            if not across:
+                claims += mine
+        outcomes.append(
+            OutcomeInput(
+                tuple(claims), outcome.event_is, outcome.horizon.strip(), outcome.follow_up, int(sheet.confidence_level) / 100
+            )
+        )
+    return Gathered(AppraisalInput(tuple(outcomes)), tuple(problems), read_as)

@@ -1,0 +1,1 @@
+"""All rounding, wording and drawing: one frozen dataclass per template."""

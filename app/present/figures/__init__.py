@@ -1,0 +1,1 @@
+"""Figures as SVG text. Numbers come in; nothing is computed but positions."""

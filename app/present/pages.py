@@ -1,0 +1,264 @@
+"""One frozen dataclass per template: all that a page shows, as text."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+from datetime import datetime
+
+from app.appraisal.fields import NUMBER_FIELDS, arm_field, arm_name_field, outcome_field
+from app.appraisal.model import Appraisal
+from app.appraisal.sheet import CONFIDENCE_LEVELS, Sheet, TypedArm
+from app.errors import FieldProblem
+from app.present.numerals import fixed
+from app.present.results import ResultsView, results_view
+from app.present.wording import CAUTIONS, Names
+from app.printed.claims import ARMS
+from app.printed.number import PrintedNumber
+
+
+@dataclass(frozen=True, slots=True)
+class FieldView:
+    """A box: its name, label and typed text, and what is wrong with it or how it was read."""
+
+    name: str
+    label: str
+    value: str
+    example: str = ""
+    message: str = ""
+    hint: str = ""
+    refused: bool = False
+
+
+@dataclass(frozen=True, slots=True)
+class ChoiceView:
+    """A choice: its name and label, and its options as (value, text, chosen)."""
+
+    name: str
+    label: str
+    options: tuple[tuple[str, str, bool], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class ArmBoxes:
+    """The row of boxes of one arm."""
+
+    key: str
+    role: str
+    shown_name: str
+    name: FieldView
+    numbers: tuple[FieldView, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class TabView:
+    """A tab: an outcome, its address, and whether it is the one shown."""
+
+    text: str
+    address: str
+    current: bool
+
+
+@dataclass(frozen=True, slots=True)
+class ShelfLine:
+    """A sheet in the list of papers."""
+
+    address: str
+    title: str
+    outcomes: str
+    saved: str
+
+
+@dataclass(frozen=True, slots=True)
+class ConflictView:
+    """Another window saved this sheet meanwhile; what was typed here lies apart."""
+
+    saved: str
+    theirs: str
+    mine: str
+
+
+@dataclass(frozen=True, slots=True)
+class SheetView:
+    """`sheet/sheet.html` and its fragment: a sheet with its boxes and results."""
+
+    id: str
+    revision: int
+    writer: str
+    shown: int
+    heading: str
+    invented: bool
+    saved: str
+    tabs: tuple[TabView, ...]
+    add_outcome: str
+    title: FieldView
+    reference: FieldView
+    outcome_name: FieldView
+    counted: FieldView
+    horizon: FieldView
+    event_is: ChoiceView
+    follow_up: ChoiceView
+    confidence_level: ChoiceView
+    columns: tuple[str, ...]
+    arms: tuple[ArmBoxes, ...]
+    results: ResultsView
+    cautions: tuple[str, ...]
+    conflict: ConflictView | None
+    version: str
+    own_page: bool
+
+
+@dataclass(frozen=True, slots=True)
+class HomeView:
+    """`home/home.html`: an empty sheet, and the list of papers."""
+
+    sheet: SheetView
+    shelf: tuple[ShelfLine, ...]
+    kept_in: str
+    version: str
+
+
+@dataclass(frozen=True, slots=True)
+class ProblemView:
+    """`problem.html`: what went wrong with a request, and the way on."""
+
+    title: str
+    message: str
+    hint: str
+    version: str
+
+
+EVENT_IS_TEXT = {"unwanted": "unwanted (fewer is better)", "wanted": "wanted (more is better)"}
+FOLLOW_UP_TEXT = {"not_said": "not said", "fixed": "everyone to the same time", "varies": "varies, or censored"}
+
+
+def time_text(moment: datetime, now: datetime) -> str:
+    """"14:02" today, else "3 Feb 2026"."""
+    return f"{moment:%H:%M}" if moment.date() == now.date() else f"{moment.day} {moment:%b %Y}"
+
+
+def names_of(sheet: Sheet, index: int) -> Names:
+    """How to name the arms and the event of one outcome in sentences."""
+    outcome = sheet.outcomes[index]
+    intervention, comparator = (name.strip() for name in sheet.arms[:2])
+    counted = outcome.counted.strip() or outcome.name.strip()
+    return Names(
+        intervention or "the intervention",
+        comparator or "the comparator",
+        _lower_first(counted) or "the event",
+        outcome.horizon.strip(),
+        outcome.follow_up == "fixed",
+    )
+
+
+def _lower_first(text: str) -> str:
+    """The text with its first letter small, unless it looks like a name or abbreviation."""
+    return text[:1].lower() + text[1:] if text[1:2].islower() else text
+
+
+def shelf_line(sheet_id: str, sheet: Sheet, saved: datetime, now: datetime) -> ShelfLine:
+    """A sheet as a line of the list of papers."""
+    named = [outcome.name.strip() or outcome.counted.strip() for outcome in sheet.outcomes]
+    outcomes = ", ".join(name for name in named if name) or "no outcome named yet"
+    return ShelfLine(f"/sheet/{sheet_id}", _heading(sheet), outcomes, time_text(saved, now))
+
+
+def _heading(sheet: Sheet) -> str:
+    return sheet.title.strip() or "Untitled sheet"
+
+
+class _Fields:
+    """Makes the boxes of one sheet, each with its own problem."""
+
+    def __init__(
+        self, problems: Iterable[FieldProblem], needs: Iterable[FieldProblem], read_as: Mapping[str, PrintedNumber]
+    ) -> None:
+        self._needs = {problem.field: problem for problem in needs}
+        self._problems = {problem.field: problem for problem in problems}
+        self._read_as = read_as
+
+    def box(self, name: str, label: str, value: str, example: str = "") -> FieldView:
+        refused = self._problems.get(name)
+        shown = refused or self._needs.get(name)
+        message, hint = (shown.message, shown.hint) if shown else ("", "")
+        if shown is None and name in self._read_as:
+            read = self._read_as[name]
+            hint = f"read as {fixed(float(read.value), read.decimals)}"
+        return FieldView(name, label, value, example, message, hint, refused is not None)
+
+    def arm(self, index: int, outcome: int, name: str, typed: TypedArm) -> ArmBoxes:
+        role = ARMS[index].capitalize()
+        boxes = tuple(
+            self.box(arm_field(outcome, index, spec.part), f"{role}: {spec.label.lower()}", getattr(typed, spec.part), spec.example)
+            for spec in NUMBER_FIELDS
+        )
+        named = self.box(arm_name_field(index), f"Name of the {ARMS[index]} arm", name)
+        return ArmBoxes(ARMS[index], role, name.strip() or role, named, boxes)
+
+
+def _choice(name: str, label: str, texts: Mapping[str, str], chosen: str) -> ChoiceView:
+    return ChoiceView(name, label, tuple((value, text, value == chosen) for value, text in texts.items()))
+
+
+def sheet_view(
+    sheet: Sheet,
+    appraisal: Appraisal,
+    *,
+    shown: int,
+    problems: Iterable[FieldProblem],
+    needs: Iterable[FieldProblem],
+    read_as: Mapping[str, PrintedNumber],
+    sheet_id: str,
+    revision: int,
+    writer: str,
+    saved: datetime | None,
+    now: datetime,
+    version: str,
+    own_page: bool,
+    conflict: ConflictView | None = None,
+) -> SheetView:
+    """The whole page of one sheet, showing one of its outcomes."""
+    fields = _Fields(problems, needs, read_as)
+    outcome = sheet.outcomes[shown]
+    tabs = tuple(
+        TabView(o.name.strip() or f"Outcome {i + 1}", f"/sheet/{sheet_id}?outcome={i}", i == shown)
+        for i, o in enumerate(sheet.outcomes)
+    )
+    return SheetView(
+        id=sheet_id,
+        revision=revision,
+        writer=writer,
+        shown=shown,
+        heading=_heading(sheet),
+        invented=sheet.invented,
+        saved="Nothing typed yet" if saved is None else f"Saved {time_text(saved, now)}, on this computer only",
+        tabs=tabs,
+        add_outcome="" if saved is None else f"/sheet/{sheet_id}/outcome",
+        title=fields.box("title", "Title of the paper", sheet.title),
+        reference=fields.box("reference", "Where it is from", sheet.reference),
+        outcome_name=fields.box(outcome_field(shown, "name"), "Outcome", outcome.name, "Recurrence"),
+        counted=fields.box(outcome_field(shown, "counted"), "What is counted", outcome.counted, "a recurrence"),
+        horizon=fields.box(outcome_field(shown, "horizon"), "Time it refers to", outcome.horizon, "12 months"),
+        event_is=_choice(outcome_field(shown, "event_is"), "The event is", EVENT_IS_TEXT, outcome.event_is),
+        follow_up=_choice(outcome_field(shown, "follow_up"), "Follow-up", FOLLOW_UP_TEXT, outcome.follow_up),
+        confidence_level=_choice(
+            "confidence_level", "Confidence level", {level: f"{level}%" for level in CONFIDENCE_LEVELS}, sheet.confidence_level
+        ),
+        columns=tuple(spec.label for spec in NUMBER_FIELDS),
+        arms=tuple(fields.arm(j, shown, sheet.arms[j], typed) for j, typed in enumerate(outcome.arms)),
+        results=results_view(appraisal.outcomes[shown], names_of(sheet, shown)),
+        cautions=CAUTIONS,
+        conflict=conflict,
+        version=version,
+        own_page=own_page,
+    )
+
+
+def home_view(sheet: SheetView, shelf: tuple[ShelfLine, ...], kept_in: str, version: str) -> HomeView:
+    """The first page."""
+    return HomeView(sheet, shelf, kept_in, version)
+
+
+def conflict_view(theirs: str, mine: str, saved: str, now: datetime) -> ConflictView:
+    """Where the two versions of a sheet lie."""
+    return ConflictView(time_text(datetime.fromisoformat(saved), now), f"/sheet/{theirs}", f"/sheet/{mine}")

@@ -1,0 +1,197 @@
+"""Every sentence a reader sees about results: one per slug, from the evidence."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass
+from typing import Any
+
+from app.appraisal.model import Note
+from app.present.numerals import people, percentages, ratios, spread
+from app.reconstruct.arm import Run
+
+CAUTIONS: tuple[str, ...] = (
+    "Averages of one trial’s groups, not a forecast for one person.",
+    "Arithmetic cannot judge bias: how people were allocated, followed and reported is for the reader.",
+    "An interval carries chance only. One trial is not all the evidence; look for systematic reviews.",
+    "Harms are often under-detected in trials. Dose, product information and interactions are outside this program.",
+    "For those who appraise trials for their work; not advice to patients. Local guidance and licensed judgement come first.",
+)
+"""Standing cautions of every sheet, hand-out and export."""
+
+NAIVE = {"varies": "follow-up varies", "not_said": "follow-up not said", "fixed": ""}
+
+
+@dataclass(frozen=True, slots=True)
+class Names:
+    """How the sheet names things, with plain words where nothing is typed."""
+
+    intervention: str
+    comparator: str
+    counted: str
+    horizon: str
+    fixed_time: bool
+
+    def arm(self, key: object) -> str:
+        """The name of an arm by its key."""
+        return self.intervention if key == "intervention" else self.comparator
+
+    @property
+    def within(self) -> str:
+        """The horizon as it ends a clause, with its leading blank; empty if not typed."""
+        if not self.horizon:
+            return ""
+        return f" within {self.horizon}" if self.fixed_time else f" over {self.horizon}"
+
+
+@dataclass(frozen=True, slots=True)
+class NoteText:
+    """A note as shown: a headline and its sentences."""
+
+    slug: str
+    head: str
+    body: str
+
+
+def either(items: Sequence[str]) -> str:
+    """"a", "a or b", "a, b or c"."""
+    return items[0] if len(items) == 1 else f"{', '.join(items[:-1])} or {items[-1]}"
+
+
+LOWER_HIGHER = (" lower", " higher")
+POINTS = (" points lower", " points higher")
+PER_CENT = ("% lower", "% higher")
+FEWER_MORE = (" fewer", " more")
+
+
+def signed_spread(values: Sequence[float], texts: Sequence[str], words: tuple[str, str]) -> str:
+    """A span of signed values in words that carry the sign: "0.7 to 10.1 lower", "1.2 lower to 3.4 higher".
+
+    `values` (low, high) decide the words, `texts` are their sizes; `words` follow a text as they stand.
+    """
+    (low, high), (first, last) = values, texts
+    if high <= 0 and low < 0:
+        return spread((last, first)) + words[0]
+    if low >= 0 and high > 0:
+        return spread((first, last)) + words[1]
+    if low == high == 0:
+        return first
+    return f"{first}{words[0]} to {last}{words[1]}"
+
+
+def _people_of(run: Run) -> str:
+    return spread([people(run.first), people(run.last)])
+
+
+def _contradict(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+    run = evidence["run"]
+    recomputed = percentages([run.first / run.total], 2)[0]
+    return (
+        "Counts and percentage contradict each other",
+        f"{names.arm(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%. Check what was "
+        "typed first. Neither is taken to be right; the figures here follow the counts.",
+    )
+
+
+def _no_count_fits(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+    total = evidence["total"]
+    if total is None:
+        return (
+            "No total fits",
+            f"{names.arm(evidence['arm'])}: no whole number of people gives this percentage with this count. "
+            "Check what was typed first.",
+        )
+    near = [f"{people(count)} is {percentages([count / total], 2)[0]}%" for count in evidence["nearest"]]
+    body = f"{names.arm(evidence['arm'])}: no count among {people(total)} rounds to this percentage; {either(near)}."
+    if evidence["other_totals"]:
+        nearest = sorted(evidence["other_totals"], key=lambda other: abs(other - total))[:4]
+        body += f" A total of {either([people(other) for other in sorted(nearest)])} would fit: was another number analysed?"
+    if evidence["if_truncated"] is not None:
+        body += f" {_people_of(evidence['if_truncated'])} would fit if digits were cut off, not rounded."
+    return "No count fits", body + " Check what was typed first."
+
+
+def _truncated(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+    return (
+        "More counts if digits were cut off",
+        f"{names.arm(evidence['arm'])}: {_people_of(evidence['run'])} of {people(evidence['total'])} would print so only "
+        "if further digits were cut off instead of rounded. Not carried on.",
+    )
+
+
+def _last_digit(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+    run = evidence["run"]
+    recomputed = percentages([run.first / run.total], 2)[0]
+    return (
+        "Last digit differs",
+        f"{names.arm(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%, one unit of the "
+        "printed digit away. Printed percentages often are.",
+    )
+
+
+def _naive(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+    if evidence["follow_up"] == "varies":
+        body = (
+            "Follow-up varies or people are censored: risk difference and number needed to treat from counts are naive. "
+            "Use risks at a fixed time where the paper gives them."
+        )
+    else:
+        body = (
+            "Whether everyone was followed for the same time is not said. If not, risk difference and number needed to "
+            "treat from counts are naive. Say it under Follow-up."
+        )
+    return "Naive if follow-up varies", body
+
+
+def _odds_part(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+    odds, ratio = (spread(ratios(evidence[key])) for key in ("odds_ratio", "risk_ratio"))
+    return (
+        "Odds are not risks here",
+        f"The event is common enough that the two part: an odds ratio of {odds} stands beside a risk ratio of {ratio}. "
+        "Read the first as odds only.",
+    )
+
+
+def _fixed(head: str, body: str) -> Callable[[Mapping[str, Any], Names], tuple[str, str]]:
+    return lambda evidence, names: (head, body)
+
+
+_NOTES: dict[str, Callable[[Mapping[str, Any], Names], tuple[str, str]]] = {
+    "contradict_each_other": _contradict,
+    "no_count_fits": _no_count_fits,
+    "more_if_truncated": _truncated,
+    "last_digit_differs": _last_digit,
+    "naive_follow_up": _naive,
+    "odds_part_from_risk": _odds_part,
+    "too_many_tables": lambda evidence, names: (
+        "Too many tables to compute on all",
+        f"{people(evidence['count'])} tables fit. The ranges shown come from some of them, spread evenly, and may fall a "
+        "little short. Type how many were analysed to narrow them.",
+    ),
+    "no_events_at_all": _fixed(
+        "No events in either arm",
+        "The trial holds no information on the ratio; only upper limits of each risk can be stated.",
+    ),
+    "no_events_in_comparator": _fixed(
+        "No events in the comparator",
+        "The risk ratio and odds ratio cannot be stated, only a lower limit. No half event is added to the empty cell.",
+    ),
+    "no_events_in_intervention": _fixed(
+        "No events in the intervention arm",
+        "The ratios are 0 and only their upper limits are informative. No half event is added to the empty cell.",
+    ),
+    "all_have_the_event": _fixed(
+        "Everybody has the event", "The odds ratio cannot be stated; the log interval for the risk ratio has no width here."
+    ),
+    "time_not_stated": _fixed(
+        "Time not stated", "An absolute difference belongs to a time. Type the time that the counts refer to."
+    ),
+}
+
+NOTE_SLUGS = frozenset(_NOTES)
+
+
+def note_text(note: Note, names: Names) -> NoteText:
+    """A note in words."""
+    head, body = _NOTES[note.slug](note.evidence, names)
+    return NoteText(note.slug, head, body)

@@ -1,0 +1,1 @@
+"""Claims in, every integer table that could have been printed so out."""

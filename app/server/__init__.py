@@ -1,0 +1,1 @@
+"""The whole as one ASGI application."""

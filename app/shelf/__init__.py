@@ -1,0 +1,1 @@
+"""The shelf: sheets as typed, in one SQLite file on this computer."""
