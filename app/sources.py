@@ -5,19 +5,24 @@ from __future__ import annotations
 SOURCES: dict[str, str] = {
     "altman_1998": "Altman DG. Confidence intervals for the number needed to treat. BMJ 1998;317:1309-1312.",
     "bender_2001": (
-        "Bender R. Calculating confidence intervals for the number needed to treat. "
-        "Controlled Clinical Trials 2001;22:102-110."
+        "Bender R. Calculating confidence intervals for the number needed to treat. Controlled Clinical Trials 2001;22:102-110."
     ),
     "campbell_2007": (
         "Campbell I. Chi-squared and Fisher-Irwin tests of two-by-two tables with small sample "
         "recommendations. Statistics in Medicine 2007;26:3661-3675."
+    ),
+    "clopper_pearson_1934": (
+        "Clopper CJ, Pearson ES. The use of confidence or fiducial limits illustrated in the case of the "
+        "binomial. Biometrika 1934;26:404-413."
     ),
     "cornfield_1956": (
         "Cornfield J. A statistical problem arising from retrospective studies. Proceedings of the Third "
         "Berkeley Symposium on Mathematical Statistics and Probability 1956;4:135-148."
     ),
     "fisher_1935": "Fisher RA. The logic of inductive inference. Journal of the Royal Statistical Society 1935;98:39-82.",
-    "irwin_1935": "Irwin JO. Tests of significance for differences between percentages based on small numbers. Metron 1935;12:83-94.",
+    "irwin_1935": (
+        "Irwin JO. Tests of significance for differences between percentages based on small numbers. Metron 1935;12:83-94."
+    ),
     "katz_1978": (
         "Katz D, Baptista J, Azen SP, Pike MC. Obtaining confidence intervals for the risk ratio in cohort "
         "studies. Biometrics 1978;34:469-474."
@@ -47,5 +52,7 @@ SOURCES: dict[str, str] = {
         "Wilson EB. Probable inference, the law of succession, and statistical inference. Journal of the "
         "American Statistical Association 1927;22:209-212."
     ),
-    "woolf_1955": "Woolf B. On estimating the relation between blood group and disease. Annals of Human Genetics 1955;19:251-253.",
+    "woolf_1955": (
+        "Woolf B. On estimating the relation between blood group and disease. Annals of Human Genetics 1955;19:251-253."
+    ),
 }

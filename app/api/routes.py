@@ -6,13 +6,13 @@ import json
 from typing import Annotated, Any
 
 from fastapi import APIRouter, Depends, Request
+from fastapi.responses import JSONResponse
 
 from app.api.answers import effects_answer
 from app.api.schemas import EffectsAnswer, EffectsRequest, Problems
 from app.appraisal.effects import effects_of
 from app.errors import FieldProblem, InputProblems
 from app.intake.effects import effects_input
-from fastapi.responses import JSONResponse
 
 _REFUSALS: dict[int | str, dict[str, Any]] = {
     status: {"model": Problems, "description": description}
@@ -36,7 +36,9 @@ async def json_body(request: Request) -> Any:
     """The body as JSON, strictly: no NaN, no lone surrogate, declared as JSON."""
     kind = request.headers.get("content-type", "").partition(";")[0].strip().lower()
     if kind != "application/json":
-        raise InputProblems([FieldProblem("", "The body is not declared as JSON.", "Send Content-Type: application/json.", "not_json")])
+        raise InputProblems(
+            [FieldProblem("", "The body is not declared as JSON.", "Send Content-Type: application/json.", "not_json")]
+        )
     body = await request.body()
     try:
         found = json.loads(body.decode("utf-8"), parse_constant=_refuse_constant)

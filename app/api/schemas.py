@@ -6,6 +6,8 @@ from typing import Annotated, Literal
 
 from pydantic import BaseModel, ConfigDict, Field
 
+from app.measures.fourfold import LARGEST_TOTAL
+
 Number = Annotated[float | Literal["inf", "-inf"] | None, Field(description='null is undefined, "inf" infinite')]
 
 
@@ -31,8 +33,8 @@ class Problems(_Shape):
 class ArmCounts(_Shape):
     """Events and people of one arm."""
 
-    events: Annotated[int, Field(ge=0)]
-    total: Annotated[int, Field(ge=1)]
+    events: Annotated[int, Field(ge=0, le=LARGEST_TOTAL)]
+    total: Annotated[int, Field(ge=1, le=LARGEST_TOTAL)]
 
 
 class EffectsRequest(_Shape):

@@ -67,11 +67,11 @@ class MeasureAppraisal:
 
 @dataclass(frozen=True, slots=True)
 class RiskAppraisal:
-    """One arm: the counts that fit, and the risk over them (None where too little is known)."""
+    """The risk of one arm over the counts that fit, the default method first."""
 
     fits: ArmFits
-    risk: Range | None = None
-    intervals: tuple[tuple[RiskMethod, IntervalRange], ...] = ()
+    estimate: Range
+    intervals: tuple[tuple[RiskMethod, IntervalRange], ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -79,13 +79,15 @@ class NeededAppraisal:
     """Number needed to treat: the values nearest and furthest from 1, and the inverted interval.
 
     `exact` and `rounded` hold one value where one table fits or all agree in direction, else are
-    empty: across no difference there is no one range. `segments` come from the hull of the interval.
+    empty: across no difference there is no one range. `segments` come from the hull of the default
+    interval, `others` from those of the other methods.
     """
 
     exact: tuple[Fraction, Fraction] | None
     rounded: tuple[RoundedNeeded, RoundedNeeded] | None
     direction: str
     segments: tuple[Segment, ...]
+    others: tuple[tuple[EffectMethod, tuple[Segment, ...]], ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -97,16 +99,25 @@ class Note:
 
 
 @dataclass(frozen=True, slots=True)
-class OutcomeAppraisal:
-    """All that follows from one outcome's claims."""
+class BothArms:
+    """What follows once both arms allow something."""
 
-    input: OutcomeInput
     intervention: RiskAppraisal
     comparator: RiskAppraisal
-    fits: Fits | None
+    fits: Fits
     measures: Mapping[Measure, MeasureAppraisal]
-    needed: NeededAppraisal | None
+    needed: NeededAppraisal
     tests: tuple[tuple[NoDifferenceTest, Range], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class OutcomeAppraisal:
+    """All that follows from one outcome's claims; None for what too little is claimed of."""
+
+    input: OutcomeInput
+    intervention: RiskAppraisal | None
+    comparator: RiskAppraisal | None
+    both: BothArms | None
     notes: tuple[Note, ...]
 
 

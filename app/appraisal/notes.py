@@ -6,7 +6,8 @@ from collections.abc import Mapping
 
 import numpy as np
 
-from app.appraisal.model import MeasureAppraisal, Note, OutcomeInput
+from app.appraisal.model import BothArms, MeasureAppraisal, Note, OutcomeInput
+from app.measures.proportion import clopper_pearson
 from app.measures.registry import Measure
 from app.reconstruct.arm import ArmFits
 from app.reconstruct.tables import Fits
@@ -39,11 +40,15 @@ def _arm_notes(arm: ArmFits) -> list[Note]:
     return notes
 
 
-def _empty_cells(fits: Fits) -> list[Note]:
+def _empty_cells(fits: Fits, confidence_level: float) -> list[Note]:
     table = fits.tables
     none_first, none_second = (bool(np.all(x == 0)) for x in (table.events_intervention, table.events_comparator))
     if none_first and none_second:
-        return [Note("no_events_at_all")]
+        upper = [
+            float(clopper_pearson(0, total.min(), confidence_level).high)
+            for total in (table.total_intervention, table.total_comparator)
+        ]
+        return [Note("no_events_at_all", {"upper": upper, "confidence_level": confidence_level})]
     if none_second:
         return [Note("no_events_in_comparator")]
     if none_first:
@@ -67,18 +72,17 @@ def notes_on(
     given: OutcomeInput,
     intervention: ArmFits,
     comparator: ArmFits,
-    fits: Fits | None,
-    measures: Mapping[Measure, MeasureAppraisal] | None,
+    both: BothArms | None,
 ) -> tuple[Note, ...]:
     """Notes on one outcome."""
     notes = _arm_notes(intervention) + _arm_notes(comparator)
-    if fits is None or measures is None:
+    if both is None:
         return tuple(notes)
-    if not fits.complete:
-        notes.append(Note("too_many_tables", {"count": fits.count}))
-    notes += _empty_cells(fits)
+    if not both.fits.complete:
+        notes.append(Note("too_many_tables", {"count": both.fits.count}))
+    notes += _empty_cells(both.fits, given.confidence_level)
     if given.follow_up != "fixed":
         notes.append(Note("naive_follow_up", {"follow_up": given.follow_up}))
     if not given.horizon:
         notes.append(Note("time_not_stated"))
-    return tuple(notes + _odds_part(measures))
+    return tuple(notes + _odds_part(both.measures))

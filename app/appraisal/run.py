@@ -10,6 +10,7 @@ from app.appraisal.effects import Effects, effects_of, risk_of
 from app.appraisal.model import (
     Appraisal,
     AppraisalInput,
+    BothArms,
     IntervalRange,
     MeasureAppraisal,
     NeededAppraisal,
@@ -22,6 +23,7 @@ from app.appraisal.notes import notes_on
 from app.measures.fourfold import Floats, Fourfold
 from app.measures.interval import Interval
 from app.measures.needed import direction_of, needed_segments, rounded_needed
+from app.printed.claims import ARMS
 from app.reconstruct.arm import ArmFits, arm_fits
 from app.reconstruct.tables import ends, tables_that_fit
 
@@ -35,9 +37,9 @@ def _interval_range(interval: Interval) -> IntervalRange:
     return IntervalRange(range_of(interval.low), range_of(interval.high))
 
 
-def _risk(fits: ArmFits, confidence_level: float) -> RiskAppraisal:
+def _risk(fits: ArmFits, confidence_level: float) -> RiskAppraisal | None:
     if not fits.usable:
-        return RiskAppraisal(fits)
+        return None
     points = ends(fits)
     result = risk_of(points[:, 0], points[:, 1], confidence_level)
     intervals = tuple((method, _interval_range(interval)) for method, interval in result.intervals)
@@ -60,27 +62,25 @@ def exact_difference(table: Fourfold, index: int) -> Fraction:
 
 def _needed(effects: Effects, unwanted: bool) -> NeededAppraisal:
     result = effects.measures["risk_difference"]
-    _, interval = result.default
-    hull = Interval(np.asarray(np.min(interval.low)), np.asarray(np.max(interval.high)))
-    segments = needed_segments(hull, unwanted)
+    inverted = [
+        (method, needed_segments(Interval(np.asarray(np.min(limits.low)), np.asarray(np.max(limits.high))), unwanted))
+        for method, limits in result.intervals
+    ]
+    segments = next(found for method, found in inverted if method.default)
+    others = tuple(pair for pair in inverted if not pair[0].default)
     first, last = (
         exact_difference(effects.table, int(index)) for index in (np.argmin(result.estimate), np.argmax(result.estimate))
     )
     if first * last <= 0:
         direction = "none" if first == last == 0 else "either"
-        return NeededAppraisal(None, None, direction, segments)
+        return NeededAppraisal(None, None, direction, segments, others)
     sense = direction_of(first, unwanted)
     near, far = sorted((abs(1 / first), abs(1 / last)))
-    return NeededAppraisal((near, far), (rounded_needed(near, sense), rounded_needed(far, sense)), sense, segments)
+    return NeededAppraisal((near, far), (rounded_needed(near, sense), rounded_needed(far, sense)), sense, segments, others)
 
 
-def appraise_outcome(given: OutcomeInput) -> OutcomeAppraisal:
-    """All that follows from one outcome's claims."""
-    first, second = arm_fits("intervention", given.claims), arm_fits("comparator", given.claims)
-    fits = tables_that_fit(first, second)
-    arms = _risk(first, given.confidence_level), _risk(second, given.confidence_level)
-    if fits is None:
-        return OutcomeAppraisal(given, *arms, None, {}, None, (), notes_on(given, first, second, None, None))
+def _both(intervention: RiskAppraisal, comparator: RiskAppraisal, given: OutcomeInput) -> BothArms:
+    fits = tables_that_fit(intervention.fits, comparator.fits)
     effects = effects_of(fits.tables, given.confidence_level)
     measures = {
         measure: MeasureAppraisal(
@@ -89,15 +89,17 @@ def appraise_outcome(given: OutcomeInput) -> OutcomeAppraisal:
         )
         for measure, result in effects.measures.items()
     }
-    return OutcomeAppraisal(
-        given,
-        *arms,
-        fits,
-        measures,
-        _needed(effects, given.event_is == "unwanted"),
-        tuple((result.test, _p_range(result.p, effects)) for result in effects.tests),
-        notes_on(given, first, second, fits, measures),
-    )
+    needed = _needed(effects, given.event_is == "unwanted")
+    tests = tuple((result.test, _p_range(result.p, effects)) for result in effects.tests)
+    return BothArms(intervention, comparator, fits, measures, needed, tests)
+
+
+def appraise_outcome(given: OutcomeInput) -> OutcomeAppraisal:
+    """All that follows from one outcome's claims."""
+    first, second = (arm_fits(arm, given.claims) for arm in ARMS)
+    intervention, comparator = (_risk(fits, given.confidence_level) for fits in (first, second))
+    both = _both(intervention, comparator, given) if intervention and comparator else None
+    return OutcomeAppraisal(given, intervention, comparator, both, notes_on(given, first, second, both))
 
 
 def _p_range(p: Floats, effects: Effects) -> Range:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import contextlib
 import socket
 import sys
 import threading
@@ -29,6 +30,7 @@ def _bind(port: int | None) -> socket.socket:
         bound.setsockopt(socket.SOL_SOCKET, socket.SO_REUSEADDR, 1)
         try:
             bound.bind((_HOST, candidate))
+            bound.listen(64)  # from here on a browser that comes early waits instead of failing
         except OSError as refused:
             bound.close()
             why = refused.strerror
@@ -39,7 +41,7 @@ def _bind(port: int | None) -> socket.socket:
     raise typer.Exit(2)
 
 
-def _version(asked: bool) -> None:
+def _show_version(asked: bool) -> None:
     if asked:
         typer.echo(f"armslength {__version__}")
         raise typer.Exit
@@ -50,7 +52,9 @@ def serve(
     port: Annotated[int | None, typer.Option(min=0, max=65535, help="Port to listen on; a taken one is an error.")] = None,
     open_browser: Annotated[bool, typer.Option("--open/--no-open", help="Open the browser.")] = True,
     data: Annotated[Path | None, typer.Option(help="Folder of the shelf.")] = None,
-    version: Annotated[bool, typer.Option("--version", callback=_version, is_eager=True, help="Show the version.")] = False,
+    _version: Annotated[
+        bool, typer.Option("--version", callback=_show_version, is_eager=True, help="Show the version.")
+    ] = False,
 ) -> None:
     """Serve Armslength to this computer's browser until Ctrl-C."""
     import uvicorn  # heavy; not needed for --help
@@ -62,19 +66,20 @@ def serve(
     try:
         app = create_app(Settings(data_dir=folder.expanduser().absolute()))
     except ArmslengthError as refused:
+        bound.close()
         typer.echo(str(refused), err=True)
         raise typer.Exit(4) from refused
     address = f"http://{_HOST}:{bound.getsockname()[1]}/"
-    typer.echo(f"Armslength {__version__} listens on {address} (this computer only). Sheets are kept in {folder}. Ctrl-C ends it.")
+    typer.echo(
+        f"Armslength {__version__} listens on {address} (this computer only). Sheets are kept in {folder}. Ctrl-C ends it."
+    )
     if open_browser:
         threading.Timer(0.5, webbrowser.open, (address,)).start()
     config = uvicorn.Config(
         app, log_level="warning", access_log=False, proxy_headers=False, server_header=False, timeout_graceful_shutdown=1
     )
-    try:
+    with contextlib.suppress(KeyboardInterrupt):
         uvicorn.Server(config).run(sockets=[bound])
-    except KeyboardInterrupt:
-        pass
     typer.echo("Armslength has ended.")
 
 

@@ -35,7 +35,9 @@ class Problems(list[FieldProblem]):
         for name in given:
             if name not in known:
                 shown = "".join(c if c.isprintable() else "\N{REPLACEMENT CHARACTER}" for c in name[:40])
-                self.add(f"{prefix}{shown}", "This field is not known here.", f"Known are: {', '.join(known)}.", "unknown_field")
+                self.add(
+                    f"{prefix}{shown}", "This field is not known here.", f"Known are: {', '.join(known)}.", "unknown_field"
+                )
 
 
 def whole_number(problems: Problems, field: str, value: Any, least: int) -> int | None:
@@ -73,7 +75,7 @@ def _arm(problems: Problems, body: dict[str, Any], arm: str) -> tuple[int, int] 
         problems.add(arm, "This arm is missing.", 'Give {"events": 46, "total": 418}.', "missing_field")
         return None
     problems.unknown(given, ("events", "total"), f"{arm}.")
-    numbers = []
+    numbers: list[int | None] = []
     for name, least in (("events", 0), ("total", 1)):
         field = f"{arm}.{name}"
         if name not in given:
@@ -109,7 +111,9 @@ def effects_input(body: Any) -> EffectsInput:
     level = confidence_level(problems, body.get("confidence_level", 0.95))
     event_is = body.get("event_is", "unwanted")
     if event_is not in EVENT_IS:
-        problems.add("event_is", "Say whether the event is unwanted or wanted.", 'Give "unwanted" or "wanted".', "unknown_choice")
+        problems.add(
+            "event_is", "Say whether the event is unwanted or wanted.", 'Give "unwanted" or "wanted".', "unknown_choice"
+        )
     if problems or arms[0] is None or arms[1] is None:
         raise InputProblems(problems)
     return EffectsInput(Fourfold(*arms[0], *arms[1]), level, event_is)

@@ -63,9 +63,9 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
             TypedOutcome(
                 name=text(outcome_field(i, "name"), outcome.name),
                 counted=text(outcome_field(i, "counted"), outcome.counted),
-                event_is=cast(EventIs, choice(outcome_field(i, "event_is"), EVENT_IS, outcome.event_is)),
+                event_is=cast("EventIs", choice(outcome_field(i, "event_is"), EVENT_IS, outcome.event_is)),
                 horizon=text(outcome_field(i, "horizon"), outcome.horizon),
-                follow_up=cast(FollowUp, choice(outcome_field(i, "follow_up"), FOLLOW_UP, outcome.follow_up)),
+                follow_up=cast("FollowUp", choice(outcome_field(i, "follow_up"), FOLLOW_UP, outcome.follow_up)),
                 arms=arms,
             )
         )
@@ -116,9 +116,7 @@ def _across(outcome: int, arm: int, numbers: Mapping[ArmPart, PrintedNumber]) ->
     ]
     if not found and events is not None and others is not None and events + others != total:
         field = arm_field(outcome, arm, "total")
-        found.append(
-            problem(field, "totals_do_not_add", events=events, non_events=others, sum=events + others, total=total)
-        )
+        found.append(problem(field, "totals_do_not_add", events=events, non_events=others, sum=events + others, total=total))
     return found
 
 

@@ -12,7 +12,7 @@ _NEGLIGIBLE = 1e-17
 
 
 def _stirling_rest(n: Floats) -> Floats:
-    """ln n! less Stirling's (n + 1/2) ln n - n + ln(2 pi)/2, to full precision; 0 at n = 0 by convention."""
+    """Ln n! less Stirling's (n + 1/2) ln n - n + ln(2 pi)/2, to full precision; 0 at n = 0 by convention."""
     with np.errstate(divide="ignore", invalid="ignore"):
         small = special.gammaln(n + 1.0) - (n + 0.5) * np.log(n) + n - 0.5 * np.log(2.0 * np.pi)
         square = n * n
@@ -21,7 +21,7 @@ def _stirling_rest(n: Floats) -> Floats:
 
 
 def _deviance(observed: Floats, expected: Floats, difference: Floats) -> Floats:
-    """observed ln(observed / expected) - difference, without cancellation when the two are close."""
+    """Observed ln(observed / expected) - difference, without cancellation when the two are close."""
     with np.errstate(divide="ignore", invalid="ignore"):
         x = difference / expected
         plain = special.xlogy(observed, observed / expected) - difference
@@ -82,7 +82,8 @@ def _tail_ratio(events: Floats, n1: Floats, m: Floats, n2: Floats, direction: Fl
         x = x + np.where(upward, 1.0, -1.0)
         going = term > _NEGLIGIBLE * total[rows]
         if not going.all():
-            rows, x, term, n1, m, n2, upward = (v[going] for v in (rows, x, term, n1, m, n2, upward))
+            rows, upward = rows[going], upward[going]
+            x, term, n1, m, n2 = (v[going] for v in (x, term, n1, m, n2))
     return total
 
 

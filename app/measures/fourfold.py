@@ -9,6 +9,7 @@ from numpy.typing import ArrayLike, NDArray
 
 Counts = NDArray[np.int64]
 Floats = NDArray[np.float64]
+Flags = NDArray[np.bool_]
 
 LARGEST_TOTAL = 10**9
 """Largest people per arm: cross products of two totals stay exact in 64-bit integers."""

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from app.measures.fourfold import Floats, Fourfold
+from app.measures.fourfold import Flags, Floats, Fourfold
 from app.measures.interval import Interval, normal_quantile
 
 
@@ -26,7 +26,7 @@ def log_ratio(numerator: Floats, denominator: Floats, difference: Floats) -> Flo
         return np.where(np.abs(excess) < 0.5, np.log1p(excess), np.log(numerator / denominator))
 
 
-def log_interval(log_estimate: Floats, half_width: Floats, defined: Floats) -> Interval:
+def log_interval(log_estimate: Floats, half_width: Floats, defined: Flags) -> Interval:
     """exp(log estimate -+ half width), nan where the method is not defined."""
     with np.errstate(over="ignore", invalid="ignore"):
         low = np.where(defined, np.exp(log_estimate - half_width), np.nan)

@@ -69,6 +69,15 @@ RISK_METHODS: tuple[RiskMethod, ...] = (
         default=True,
         interval=proportion.wilson,
     ),
+    RiskMethod(
+        key="clopper_pearson",
+        name="exact (Clopper–Pearson)",
+        formula="P(X ≥ x; l) = α/2 and P(X ≤ x; u) = α/2, binomial",
+        caveat="Never below its level, often well above it: wide.",
+        sources=("clopper_pearson_1934",),
+        printed_use="usual",
+        interval=proportion.clopper_pearson,
+    ),
 )
 
 EFFECT_METHODS: tuple[EffectMethod, ...] = (

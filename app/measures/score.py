@@ -22,7 +22,9 @@ from app.measures.interval import Interval, normal_quantile
 
 _BLOCK = 8192  # temporaries of one block stay in the processor's second-level cache
 _STEP = 1e-8  # Newton is quadratic: a relative step below this, once applied, leaves 1e-15
-_MOST_STEPS = 100
+_CLOSED = 1e-15  # halving is not quadratic: it ends only when the bracket has closed
+_PATIENCE = 9  # nearly all rows need 4 to 6 steps
+_MOST_STEPS = 150
 
 _Lower = Callable[[Floats, Floats, Floats, Floats, Floats], Floats]
 _Function = Callable[[Floats, tuple[Floats, ...]], tuple[Floats, Floats]]
@@ -32,11 +34,14 @@ def _newton(function: _Function, start: Floats, low: Floats, high: Floats, terms
     """Root of an increasing function by Newton's method kept inside [low, high].
 
     `function(x, terms)` returns value and slope; `terms` are its per-row coefficients. Rows that have
-    converged are dropped from the third step on.
+    converged are dropped from the third step on. Where the slope jumps (an empty cell at the point where
+    its restricted risk leaves 0) Newton can swing between two sides for ever, so that after a few steps
+    a step that does not halve the one before it is replaced by halving the bracket.
     """
     root = start.copy()
     rows = np.arange(root.size)
     x, low, high = start.copy(), low.copy(), high.copy()
+    last = np.full_like(x, np.inf)
     for step in range(_MOST_STEPS):
         value, slope = function(x, terms)
         below = value < 0.0
@@ -44,23 +49,26 @@ def _newton(function: _Function, start: Floats, low: Floats, high: Floats, terms
         high = np.where(below, high, x)
         with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
             following = x - value / slope
-        outside = ~((following >= low) & (following <= high))
-        if outside.any():
-            following = np.where(outside, low + 0.5 * (high - low), following)
-        moving = np.abs(following - x) > _STEP * np.abs(following)
+        halved = ~((following >= low) & (following <= high))
+        if step >= _PATIENCE:
+            halved |= np.abs(following - x) > 0.5 * last
+        if halved.any():
+            following = np.where(halved, low + 0.5 * (high - low), following)
+        last = np.abs(following - x)
+        moving = last > np.where(halved, _CLOSED, _STEP) * np.abs(following)
         x = following
         if step < 2 and moving.any():
             continue
         root[rows] = x
         if not moving.any():
             break
-        rows, x, low, high = rows[moving], x[moving], low[moving], high[moving]
+        rows, x, low, high, last = rows[moving], x[moving], low[moving], high[moving], last[moving]
         terms = tuple(term[moving] for term in terms)
     return root
 
 
 def _difference_equation(multiplier: Floats, terms: tuple[Floats, ...]) -> tuple[Floats, Floats]:
-    """multiplier * sqrt(variance) - sqrt(zz), and its slope.
+    """Multiplier * sqrt(variance) - sqrt(zz), and its slope.
 
     In each arm the constrained risk r of the counted people m among n solves
     L r^2 + (n - L) r - m = 0, taken in the form that does not cancel.
@@ -162,9 +170,7 @@ def _lower_odds(a: Floats, n1: Floats, c: Floats, n2: Floats, zz: Floats) -> Flo
     return limit
 
 
-def _from_the_right(
-    function: _Function, at_zero: Floats, zz: Floats, end: Floats, terms: tuple[Floats, ...]
-) -> Floats:
+def _from_the_right(function: _Function, at_zero: Floats, zz: Floats, end: Floats, terms: tuple[Floats, ...]) -> Floats:
     """The positive root of a convex function in (0, end], reached by Newton's method from its right.
 
     `at_zero` is minus zz H at the cells plus a quarter, which places the first guess. From a point left

@@ -83,13 +83,11 @@ def sizes(values: Sequence[float], factor: float, decimals: int) -> list[str]:
     return [fixed(value, finest) for value in scaled]
 
 
-def p_value(p: float, log10_p: float | None = None) -> str:
+def p_value(p: float) -> str:
     """A p value with its sign: three decimals from 0.001 to 0.2, else two; digits gained around 0.05.
 
     Below 0.001 it is an inequality, never 0.000.
     """
-    if math.isnan(p):
-        return "cannot be stated"
     if p < 0.001:
         return "<0.001"
     decimals = 3 if p < 0.2 else 2

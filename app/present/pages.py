@@ -89,6 +89,7 @@ class SheetView:
     heading: str
     invented: bool
     saved: str
+    stamp: str
     tabs: tuple[TabView, ...]
     add_outcome: str
     title: FieldView
@@ -128,12 +129,12 @@ class ProblemView:
     version: str
 
 
-EVENT_IS_TEXT = {"unwanted": "unwanted (fewer is better)", "wanted": "wanted (more is better)"}
-FOLLOW_UP_TEXT = {"not_said": "not said", "fixed": "everyone to the same time", "varies": "varies, or censored"}
+EVENT_IS_TEXT = {"unwanted": "unwanted", "wanted": "wanted"}
+FOLLOW_UP_TEXT = {"not_said": "not said", "fixed": "same fixed time", "varies": "varies or censored"}
 
 
 def time_text(moment: datetime, now: datetime) -> str:
-    """"14:02" today, else "3 Feb 2026"."""
+    """When: "14:02" today, else "3 Feb 2026"."""
     return f"{moment:%H:%M}" if moment.date() == now.date() else f"{moment.day} {moment:%b %Y}"
 
 
@@ -188,8 +189,14 @@ class _Fields:
 
     def arm(self, index: int, outcome: int, name: str, typed: TypedArm) -> ArmBoxes:
         role = ARMS[index].capitalize()
+        empty = not any(getattr(typed, spec.part) for spec in NUMBER_FIELDS)
         boxes = tuple(
-            self.box(arm_field(outcome, index, spec.part), f"{role}: {spec.label.lower()}", getattr(typed, spec.part), spec.example)
+            self.box(
+                arm_field(outcome, index, spec.part),
+                f"{role}: {spec.label.lower()}",
+                getattr(typed, spec.part),
+                spec.example if empty else "",
+            )
             for spec in NUMBER_FIELDS
         )
         named = self.box(arm_name_field(index), f"Name of the {ARMS[index]} arm", name)
@@ -232,17 +239,18 @@ def sheet_view(
         heading=_heading(sheet),
         invented=sheet.invented,
         saved="Nothing typed yet" if saved is None else f"Saved {time_text(saved, now)}, on this computer only",
+        stamp="" if saved is None else f"Saved {saved.day} {saved:%B %Y, %H:%M}; Armslength {version}",
         tabs=tabs,
         add_outcome="" if saved is None else f"/sheet/{sheet_id}/outcome",
-        title=fields.box("title", "Title of the paper", sheet.title),
-        reference=fields.box("reference", "Where it is from", sheet.reference),
+        title=fields.box("title", "Title of the paper", sheet.title, "Title of the paper"),
+        reference=fields.box("reference", "Where it is from", sheet.reference, "Journal and year, or where it is from"),
         outcome_name=fields.box(outcome_field(shown, "name"), "Outcome", outcome.name, "Recurrence"),
         counted=fields.box(outcome_field(shown, "counted"), "What is counted", outcome.counted, "a recurrence"),
         horizon=fields.box(outcome_field(shown, "horizon"), "Time it refers to", outcome.horizon, "12 months"),
         event_is=_choice(outcome_field(shown, "event_is"), "The event is", EVENT_IS_TEXT, outcome.event_is),
         follow_up=_choice(outcome_field(shown, "follow_up"), "Follow-up", FOLLOW_UP_TEXT, outcome.follow_up),
         confidence_level=_choice(
-            "confidence_level", "Confidence level", {level: f"{level}%" for level in CONFIDENCE_LEVELS}, sheet.confidence_level
+            "confidence_level", "Level", {level: f"{level}%" for level in CONFIDENCE_LEVELS}, sheet.confidence_level
         ),
         columns=tuple(spec.label for spec in NUMBER_FIELDS),
         arms=tuple(fields.arm(j, shown, sheet.arms[j], typed) for j, typed in enumerate(outcome.arms)),

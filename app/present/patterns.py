@@ -57,7 +57,9 @@ def patterns_view() -> PatternsView:
     """Every component once."""
     names = replace(names_of(LEG_ULCER, 0), horizon="12 months")
     patterns = tuple(
-        Pattern(heading, results_view(appraise(AppraisalInput((OutcomeInput(claims, horizon="12 months"),))).outcomes[0], names))
+        Pattern(
+            heading, results_view(appraise(AppraisalInput((OutcomeInput(claims, horizon="12 months"),))).outcomes[0], names)
+        )
         for heading, claims in _CASES
     )
     return PatternsView(

@@ -9,7 +9,7 @@ from fractions import Fraction
 
 from markupsafe import Markup
 
-from app.appraisal.model import IntervalRange, MeasureAppraisal, OutcomeAppraisal, Range, RiskAppraisal
+from app.appraisal.model import BothArms, IntervalRange, MeasureAppraisal, OutcomeAppraisal, Range, RiskAppraisal
 from app.measures.needed import Segment, rounded_needed
 from app.present.figures.strip import Marks, strip
 from app.present.numerals import (
@@ -109,8 +109,6 @@ def _percent_spread(low: float, high: float, decimals: int) -> str:
 
 def _arm_row(arm: RiskAppraisal, key: str, name: str) -> ArmRow:
     runs = arm.fits.runs
-    decimals = percent_decimals(min(run.total for run in runs))
-    assert arm.risk is not None
     columns = (
         [end for run in runs for end in (run.first, run.last)],
         [run.total - end for run in runs for end in (run.first, run.last)],
@@ -118,21 +116,18 @@ def _arm_row(arm: RiskAppraisal, key: str, name: str) -> ArmRow:
     )
     events, others, total = (spread([people(min(column)), people(max(column))]) for column in columns)
     low, high = hull(arm.intervals[0][1])
-    # One decimal more than the trade's habit: the rebuilt risk is for checking.
-    return ArmRow(
-        name, key, events, others, total, _percent_spread(*arm.risk, decimals + 1), _percent_spread(low, high, decimals + 1)
-    )
+    return ArmRow(name, key, events, others, total, _percent_spread(*arm.estimate, 1), _percent_spread(low, high, 1))
 
 
 def _tables(outcome: OutcomeAppraisal, names: Names) -> TablesView | None:
     arms = (("intervention", outcome.intervention), ("comparator", outcome.comparator))
-    rows = tuple(_arm_row(arm, key, names.arm(key)) for key, arm in arms if arm.risk is not None)
+    rows = tuple(_arm_row(arm, key, names.arm(key)) for key, arm in arms if arm is not None)
     if not rows:
         return None
     level = f"{fixed(100 * outcome.input.confidence_level, 0)}% interval"
-    if outcome.fits is None:
+    if outcome.both is None:
         return TablesView("One arm so far.", "", level, rows)
-    count = outcome.fits.count
+    count = outcome.both.fits.count
     if count == 1:
         summary = "One table fits."
     else:
@@ -141,10 +136,9 @@ def _tables(outcome: OutcomeAppraisal, names: Names) -> TablesView | None:
     return TablesView(summary, in_words, level, rows)
 
 
-def _difference_views(outcome: OutcomeAppraisal, names: Names, decimals: int) -> tuple[MeasureView, MeasureView]:
-    result = outcome.measures["risk_difference"]
+def _difference_views(both: BothArms, names: Names, decimals: int, naive: str) -> tuple[MeasureView, MeasureView]:
+    result = both.measures["risk_difference"]
     low, high = hull(result.default)
-    naive = NAIVE[outcome.input.follow_up]
     shared = decimals_showing_sides([100 * v for v in (*result.estimate, low, high)], max(decimals, 1), (0.0,))
 
     def points(values: Sequence[float], words: tuple[str, str] = LOWER_HIGHER) -> str:
@@ -164,7 +158,7 @@ def _difference_views(outcome: OutcomeAppraisal, names: Names, decimals: int) ->
         beside=f"{per_1000(result.estimate)} per 1000{names.within} ({per_1000((low, high))})",
         strip=strip(
             Marks(
-                tuple(result.estimate),
+                result.estimate,
                 low,
                 high,
                 0.0,
@@ -178,7 +172,7 @@ def _difference_views(outcome: OutcomeAppraisal, names: Names, decimals: int) ->
             OtherInterval(method.name, points(hull(other))) for method, other in result.intervals if not method.default
         ),
     )
-    return difference, _needed_view(outcome, names, difference)
+    return difference, _needed_view(both, names, difference)
 
 
 def segment_text(segment: Segment) -> tuple[str, str]:
@@ -204,19 +198,20 @@ def needed_interval(segments: Sequence[Segment], direction: str) -> str:
     return text if segments[0].direction == direction else f"{text} to {segments[0].direction}"
 
 
-def _needed_view(outcome: OutcomeAppraisal, names: Names, difference: MeasureView) -> MeasureView:
-    result = outcome.needed
-    assert result is not None
+def _needed_view(both: BothArms, names: Names, difference: MeasureView) -> MeasureView:
+    result = both.needed
     against = f"against {names.comparator}{names.within}"
     if result.exact is None or result.rounded is None:
         value = "none" if result.direction == "none" else "either way"
-        beside = f"{against}; " + ("there is no difference to invert" if value == "none" else "the tables that fit differ in direction")
+        beside = f"{against}; " + (
+            "there is no difference to invert" if value == "none" else "the tables that fit differ in direction"
+        )
     else:
         value = f"{spread([needed(r.value, r.decimals) for r in result.rounded])} to {result.direction}"
-        unrounded = spread([fixed(float(exact), 2 if exact < 100 else 1) for exact in result.exact])
-        risk = _percent_spread(*outcome.comparator.risk, 1) if outcome.comparator.risk else ""
+        unrounded = spread([fixed(float(exact), 2 if exact < 10 else 1) for exact in result.exact])
+        risk = _percent_spread(*both.comparator.estimate, 1)
         beside = f"{against}, from {risk}; {unrounded} before rounding {result.rounded[0].rule}"
-    measure = outcome.measures["risk_difference"]
+    measure = both.measures["risk_difference"]
     low, high = hull(measure.default)
     interval = needed_interval(result.segments, result.direction)
     return MeasureView(
@@ -228,7 +223,7 @@ def _needed_view(outcome: OutcomeAppraisal, names: Names, difference: MeasureVie
         beside=beside,
         strip=strip(
             Marks(
-                tuple(measure.estimate),
+                measure.estimate,
                 low,
                 high,
                 0.0,
@@ -238,6 +233,9 @@ def _needed_view(outcome: OutcomeAppraisal, names: Names, difference: MeasureVie
             )
         ),
         naive=difference.naive,
+        others=tuple(
+            OtherInterval(method.name, needed_interval(segments, result.direction)) for method, segments in result.others
+        ),
     )
 
 
@@ -256,9 +254,7 @@ def _cannot_be_stated(estimate: Range) -> bool:
     return math.isnan(estimate.low) or math.isinf(estimate.high)
 
 
-def _ratio_view(
-    key: str, name: str, measure: MeasureAppraisal, beside: str, why_not: str
-) -> MeasureView:
+def _ratio_view(key: str, name: str, measure: MeasureAppraisal, beside: str, why_not: str) -> MeasureView:
     low, high = hull(measure.default)
     missing = _cannot_be_stated(measure.estimate)
     figures = [v for v in (*measure.estimate, low, high) if math.isfinite(v)]
@@ -274,7 +270,13 @@ def _ratio_view(
         beside=why_not if missing else beside,
         strip=strip(
             Marks(
-                tuple(measure.estimate), low, high, 1.0, True, lambda v: f"{v:g}", f"{name} {value}, interval {interval}, no effect at 1"
+                measure.estimate,
+                low,
+                high,
+                1.0,
+                True,
+                lambda v: f"{v:g}",
+                f"{name} {value}, interval {interval}, no effect at 1",
             )
         ),
         others=tuple(
@@ -317,7 +319,7 @@ def _reduction_view(measure: MeasureAppraisal, names: Names, why_not: str) -> Me
         interval=interval,
         method=f"1 − ratio, {measure.intervals[0][0].name}",
         beside=why_not if missing else f"{left}% of the risk with {names.comparator}",
-        strip=strip(Marks(tuple(estimate), low, high, 1.0, True, tick, f"{name} {value}, interval {interval}, no effect at 0")),
+        strip=strip(Marks(estimate, low, high, 1.0, True, tick, f"{name} {value}, interval {interval}, no effect at 0")),
         others=tuple(
             OtherInterval(method.name, _reduction_text(hull(other), decimals))
             for method, other in measure.intervals
@@ -326,15 +328,18 @@ def _reduction_view(measure: MeasureAppraisal, names: Names, why_not: str) -> Me
     )
 
 
-def _relative_views(outcome: OutcomeAppraisal, names: Names) -> tuple[MeasureView, ...]:
-    ratio, odds = outcome.measures["risk_ratio"], outcome.measures["odds_ratio"]
-    assert outcome.fits is not None
-    table = outcome.fits.tables
+def _relative_views(both: BothArms, names: Names) -> tuple[MeasureView, ...]:
+    ratio, odds = both.measures["risk_ratio"], both.measures["odds_ratio"]
+    table = both.fits.tables
     why_not = "no events in the comparator" if table.events_intervention.any() else "no events in either arm"
-    ratio_text = "" if _cannot_be_stated(ratio.estimate) else spread([fixed(v, ratio_decimals(ratio.estimate)) for v in ratio.estimate])
-    risk = _percent_spread(*outcome.comparator.risk, 1) if outcome.comparator.risk else ""
+    ratio_text = (
+        "" if _cannot_be_stated(ratio.estimate) else spread([fixed(v, ratio_decimals(ratio.estimate)) for v in ratio.estimate])
+    )
+    risk = _percent_spread(*both.comparator.estimate, 1)
     return (
-        _ratio_view("risk_ratio", "Risk ratio", ratio, f"of {names.counted}, {names.intervention} over {names.comparator}", why_not),
+        _ratio_view(
+            "risk_ratio", "Risk ratio", ratio, f"of {names.counted}, {names.intervention} over {names.comparator}", why_not
+        ),
         _reduction_view(ratio, names, why_not),
         _ratio_view(
             "odds_ratio",
@@ -346,12 +351,13 @@ def _relative_views(outcome: OutcomeAppraisal, names: Names) -> tuple[MeasureVie
     )
 
 
-def _p_values(outcome: OutcomeAppraisal) -> str:
+def _p_values(both: BothArms) -> str:
     parts = []
-    for test, found in outcome.tests:
-        texts = [p_value(found.low), p_value(found.high)]
-        text = texts[0] if texts[0] == texts[1] else f"{texts[0]} to {texts[1].lstrip('=')}"
-        parts.append(f"P{text} by {test.name}" if text[0] in "<=" else f"P {text} by {test.name}")
+    for test, found in both.tests:
+        if math.isnan(found.low):
+            parts.append(f"none by {test.name}")
+        else:
+            parts.append(f"P{spread([p_value(found.low), p_value(found.high)]).replace(' to =', ' to ')} by {test.name}")
     return "; ".join(parts)
 
 
@@ -359,15 +365,16 @@ def results_view(outcome: OutcomeAppraisal, names: Names) -> ResultsView:
     """All panels of one outcome."""
     notes = tuple(note_text(note, names) for note in outcome.notes)
     tables = _tables(outcome, names)
-    if outcome.fits is None:
+    both = outcome.both
+    if both is None:
         return ResultsView(tables, (), (), "", None, notes)
-    totals = (outcome.fits.tables.total_intervention, outcome.fits.tables.total_comparator)
+    totals = (both.fits.tables.total_intervention, both.fits.tables.total_comparator)
     decimals = percent_decimals(int(min(total.min() for total in totals)))
     return ResultsView(
         tables=tables,
-        absolute=_difference_views(outcome, names, decimals),
-        relative=_relative_views(outcome, names),
-        p_values=_p_values(outcome),
-        people=people_view(outcome, names),
+        absolute=_difference_views(both, names, decimals, NAIVE[outcome.input.follow_up]),
+        relative=_relative_views(both, names),
+        p_values=_p_values(both),
+        people=people_view(both, names, outcome.input.confidence_level),
         notes=notes,
     )

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from app.appraisal.model import Note
-from app.present.numerals import people, percentages, ratios, spread
+from app.present.numerals import fixed, people, percentages, ratios, spread
 from app.reconstruct.arm import Run
 
 CAUTIONS: tuple[str, ...] = (
@@ -36,6 +36,11 @@ class Names:
         """The name of an arm by its key."""
         return self.intervention if key == "intervention" else self.comparator
 
+    def start(self, key: object) -> str:
+        """The name of an arm as it begins a sentence."""
+        name = self.arm(key)
+        return name[:1].upper() + name[1:]
+
     @property
     def within(self) -> str:
         """The horizon as it ends a clause, with its leading blank; empty if not typed."""
@@ -54,7 +59,7 @@ class NoteText:
 
 
 def either(items: Sequence[str]) -> str:
-    """"a", "a or b", "a, b or c"."""
+    """Joined: "a", "a or b", "a, b or c"."""
     return items[0] if len(items) == 1 else f"{', '.join(items[:-1])} or {items[-1]}"
 
 
@@ -88,7 +93,7 @@ def _contradict(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     recomputed = percentages([run.first / run.total], 2)[0]
     return (
         "Counts and percentage contradict each other",
-        f"{names.arm(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%. Check what was "
+        f"{names.start(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%. Check what was "
         "typed first. Neither is taken to be right; the figures here follow the counts.",
     )
 
@@ -98,11 +103,11 @@ def _no_count_fits(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]
     if total is None:
         return (
             "No total fits",
-            f"{names.arm(evidence['arm'])}: no whole number of people gives this percentage with this count. "
+            f"{names.start(evidence['arm'])}: no whole number of people gives this percentage with this count. "
             "Check what was typed first.",
         )
     near = [f"{people(count)} is {percentages([count / total], 2)[0]}%" for count in evidence["nearest"]]
-    body = f"{names.arm(evidence['arm'])}: no count among {people(total)} rounds to this percentage; {either(near)}."
+    body = f"{names.start(evidence['arm'])}: no count among {people(total)} rounds to this percentage; {either(near)}."
     if evidence["other_totals"]:
         nearest = sorted(evidence["other_totals"], key=lambda other: abs(other - total))[:4]
         body += f" A total of {either([people(other) for other in sorted(nearest)])} would fit: was another number analysed?"
@@ -114,7 +119,7 @@ def _no_count_fits(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]
 def _truncated(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     return (
         "More counts if digits were cut off",
-        f"{names.arm(evidence['arm'])}: {_people_of(evidence['run'])} of {people(evidence['total'])} would print so only "
+        f"{names.start(evidence['arm'])}: {_people_of(evidence['run'])} of {people(evidence['total'])} would print so only "
         "if further digits were cut off instead of rounded. Not carried on.",
     )
 
@@ -124,12 +129,12 @@ def _last_digit(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     recomputed = percentages([run.first / run.total], 2)[0]
     return (
         "Last digit differs",
-        f"{names.arm(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%, one unit of the "
+        f"{names.start(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%, one unit of the "
         "printed digit away. Printed percentages often are.",
     )
 
 
-def _naive(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+def _naive(evidence: Mapping[str, Any], _names: Names) -> tuple[str, str]:
     if evidence["follow_up"] == "varies":
         body = (
             "Follow-up varies or people are censored: risk difference and number needed to treat from counts are naive. "
@@ -143,7 +148,7 @@ def _naive(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     return "Naive if follow-up varies", body
 
 
-def _odds_part(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+def _odds_part(evidence: Mapping[str, Any], _names: Names) -> tuple[str, str]:
     odds, ratio = (spread(ratios(evidence[key])) for key in ("odds_ratio", "risk_ratio"))
     return (
         "Odds are not risks here",
@@ -152,8 +157,19 @@ def _odds_part(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     )
 
 
+def _no_events(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
+    first, second = percentages(evidence["upper"], 1)
+    level = fixed(100 * evidence["confidence_level"], 0)
+    return (
+        "No events in either arm",
+        "The trial holds no information on the ratio, only an upper limit of each risk: "
+        f"{first}% with {names.intervention}, {second}% with {names.comparator} (upper end of the exact {level}% "
+        "interval). In the head: about 3 divided by the people.",
+    )
+
+
 def _fixed(head: str, body: str) -> Callable[[Mapping[str, Any], Names], tuple[str, str]]:
-    return lambda evidence, names: (head, body)
+    return lambda _evidence, _names: (head, body)
 
 
 _NOTES: dict[str, Callable[[Mapping[str, Any], Names], tuple[str, str]]] = {
@@ -163,15 +179,12 @@ _NOTES: dict[str, Callable[[Mapping[str, Any], Names], tuple[str, str]]] = {
     "last_digit_differs": _last_digit,
     "naive_follow_up": _naive,
     "odds_part_from_risk": _odds_part,
-    "too_many_tables": lambda evidence, names: (
+    "too_many_tables": lambda evidence, _names: (
         "Too many tables to compute on all",
         f"{people(evidence['count'])} tables fit. The ranges shown come from some of them, spread evenly, and may fall a "
         "little short. Type how many were analysed to narrow them.",
     ),
-    "no_events_at_all": _fixed(
-        "No events in either arm",
-        "The trial holds no information on the ratio; only upper limits of each risk can be stated.",
-    ),
+    "no_events_at_all": _no_events,
     "no_events_in_comparator": _fixed(
         "No events in the comparator",
         "The risk ratio and odds ratio cannot be stated, only a lower limit. No half event is added to the empty cell.",

@@ -16,7 +16,7 @@ from app.printed.span import Span
 
 Status = Literal["nothing", "too_little", "fits", "none_fits", "contradiction"]
 
-_NEIGHBOURS = 12  # how far from the printed total a total that would fit is looked for
+_NEIGHBOURS = 25  # how far from the printed total a total that would fit is looked for
 _MOST_TOTALS = 20_000  # more possible totals than this are as good as none known
 
 
@@ -94,6 +94,25 @@ def _totals(people: int, share: Span) -> tuple[Run, ...] | None:
     return tuple(Run(total, people, people) for total in range(first, last + 1))
 
 
+def _unknown_total(events: int | None, others: int | None, share: Span) -> tuple[Run, ...] | None:
+    """Runs from one count and the printed share of events; None if they leave the total open."""
+    if events is not None:
+        return _totals(events, share)
+    if others is None:
+        return None
+    mirrored = _totals(others, share.mirrored())
+    return None if mirrored is None else tuple(Run(r.total, r.total - others, r.total - others) for r in mirrored)
+
+
+def _from_counts(arm: Arm, events: int, others: int | None, total: int, risk: Claim | None) -> ArmFits:
+    """The one count that is stated outright, and whether the percentage fits it."""
+    if not 0 <= events <= total or total < 1 or (others is not None and events + others != total):
+        return ArmFits(arm, "contradiction", total=total)
+    slip = 0 if risk is None else _units_off(risk, Fraction(events, total))
+    status: Status = "fits" if slip <= 1 else "contradiction"
+    return ArmFits(arm, status, (Run(total, events, events),), last_digit=slip == 1, total=total)
+
+
 def _from_total(arm: Arm, total: int, claim: Claim) -> ArmFits:
     """Every count among `total` that rounds to the printed percentage, and its neighbours if none does."""
     span = _risk_span(claim)
@@ -142,23 +161,12 @@ def arm_fits(arm: Arm, claims: Iterable[Claim]) -> ArmFits:
     elif events is None and others is not None and total is not None:
         events = total - others
     if events is not None and total is not None:
-        if not 0 <= events <= total or total < 1 or (others is not None and events + others != total):
-            return ArmFits(arm, "contradiction", total=total)
-        slip = 0 if risk is None else _units_off(risk, Fraction(events, total))
-        status: Status = "fits" if slip <= 1 else "contradiction"
-        return ArmFits(arm, status, (Run(total, events, events),), last_digit=slip == 1, total=total)
+        return _from_counts(arm, events, others, total, risk)
     if risk is None:
         return ArmFits(arm, "too_little", total=total)
     if total is not None:
         return _from_total(arm, total, risk)
-    span = _risk_span(risk)
-    if events is not None:
-        runs = _totals(events, span)
-    elif others is not None:
-        mirrored = _totals(others, span.mirrored())
-        runs = None if mirrored is None else tuple(Run(r.total, r.total - others, r.total - others) for r in mirrored)
-    else:
-        runs = None
+    runs = _unknown_total(events, others, _risk_span(risk))
     if runs is None:
         return ArmFits(arm, "too_little")
     return ArmFits(arm, "fits" if runs else "none_fits", runs)

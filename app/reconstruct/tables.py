@@ -41,10 +41,8 @@ def _all_points(arm: ArmFits) -> NDArray[np.int64]:
     return np.array(pairs, dtype=np.int64)
 
 
-def tables_that_fit(intervention: ArmFits, comparator: ArmFits) -> Fits | None:
-    """Combine two arms; None where either allows nothing."""
-    if not (intervention.usable and comparator.usable):
-        return None
+def tables_that_fit(intervention: ArmFits, comparator: ArmFits) -> Fits:
+    """Combine two arms, each of which allows something."""
     count = intervention.count * comparator.count
     listed = count <= MOST_EVALUATED
     arms = [_all_points(arm) if listed else ends(arm) for arm in (intervention, comparator)]

@@ -7,7 +7,9 @@ from dataclasses import dataclass
 from markupsafe import Markup
 
 # A head and a body, about the middle of a cell, in relative moves: repeated once per person.
-_PERSON = "m0-7.4a2.2 2.2 0 1 1 0 4.4a2.2 2.2 0 1 1 0-4.4zm-2.6 5.2h5.2a1.2 1.2 0 0 1 1.2 1.2v4h-1.6v4.4h-4.4v-4.4h-1.6v-4a1.2 1.2 0 0 1 1.2-1.2z"
+_HEAD = "m0-7.4a2.2 2.2 0 1 1 0 4.4a2.2 2.2 0 1 1 0-4.4z"
+_BODY = "m-2.6 5.2h5.2a1.2 1.2 0 0 1 1.2 1.2v4h-1.6v4.4h-4.4v-4.4h-1.6v-4a1.2 1.2 0 0 1 1.2-1.2z"
+_PERSON = _HEAD + _BODY
 
 
 @dataclass(frozen=True, slots=True)

@@ -61,7 +61,7 @@ def strip(marks: Marks) -> Markup:
     first, last = first - 0.16 * room, last + 0.16 * room
 
     def x(value: float) -> float:
-        if marks.log and value <= 0 or value == -math.inf:
+        if (marks.log and value <= 0) or value == -math.inf:
             return _LEFT
         if value == math.inf:
             return _RIGHT
@@ -81,9 +81,9 @@ def strip(marks: Marks) -> Markup:
             f'<path class="estimate" d="M{left - 5:.1f} {_LINE}L{left:.1f} {_LINE - 6}H{right:.1f}'
             f'L{right + 5:.1f} {_LINE}L{right:.1f} {_LINE + 6}H{left:.1f}z"/>'
         )
-    return Markup('<svg class="strip" viewBox="0 0 {w} {h}" width="{w}" height="{h}" role="img" aria-label="{d}">{s}</svg>').format(
-        w=_WIDTH, h=_HEIGHT, d=marks.description, s=Markup("".join(parts))
-    )
+    return Markup(
+        '<svg class="strip" viewBox="0 0 {w} {h}" width="{w}" height="{h}" role="img" aria-label="{d}">{s}</svg>'
+    ).format(w=_WIDTH, h=_HEIGHT, d=marks.description, s=Markup("".join(parts)))
 
 
 def _ticks(marks: Marks, first: float, last: float, x: Callable[[float], float], zero: float) -> str:

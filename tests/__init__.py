@@ -1,0 +1,1 @@
+"""The tests, room by room as in app/."""
