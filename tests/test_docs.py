@@ -3,27 +3,49 @@
 from __future__ import annotations
 
 import ast
+import importlib
 import inspect
+import pkgutil
 import re
+from collections.abc import Callable
 from pathlib import Path
 
 import pytest
 
+import app.measures
 from app import __version__
-from app.measures import difference, exact, odds, proportion, pvalues, ratio, score
-from app.measures.registry import EFFECT_METHODS, RISK_METHODS, TESTS
+from app.measures.registry import (
+    EFFECT_METHODS,
+    RATE_EFFECTS,
+    RATE_METHODS,
+    RATE_TESTS,
+    RISK_METHODS,
+    STRATA_METHODS,
+    STRATA_TESTS,
+    TESTS,
+    everything,
+)
 from app.sources import SOURCES
 
 ROOT = Path(__file__).parents[1]
+MODULES = [
+    importlib.import_module(f"app.measures.{found.name}")
+    for found in pkgutil.iter_modules(app.measures.__path__)
+    if not found.ispkg
+]
 METHODS = [
     function
-    for module in (difference, exact, odds, proportion, pvalues, ratio, score)
+    for module in MODULES
     for name, function in inspect.getmembers(module, inspect.isfunction)
     if function.__module__ == module.__name__ and not name.startswith("_")
 ]
-
-
-REGISTERED = [m.interval for m in RISK_METHODS] + [m.interval for m in EFFECT_METHODS] + [t.p for t in TESTS]
+REGISTERED: list[Callable[..., object]] = [
+    *(row.interval for rows in (RISK_METHODS, EFFECT_METHODS, RATE_METHODS, RATE_EFFECTS) for row in rows),
+    *(row.log_p for row in TESTS),
+    *(row.p for row in RATE_TESTS),
+    *(row.pooled for row in STRATA_METHODS),
+    *(row.test for row in STRATA_TESTS),
+]
 
 
 @pytest.mark.parametrize("method", REGISTERED, ids=lambda f: f.__name__)
@@ -46,7 +68,7 @@ def test_every_source_is_cited() -> None:
 
 
 def test_every_registered_source_is_known() -> None:
-    used = {key for row in (*RISK_METHODS, *EFFECT_METHODS, *TESTS) for key in row.sources}
+    used = {key for row in everything() for key in row.sources}
     assert used <= set(SOURCES)
 
 

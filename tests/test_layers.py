@@ -31,6 +31,7 @@ OUTSIDE: dict[str, set[str]] = {
     "sqlite3": {"shelf"},
     "jinja2": {"present"},
     "markupsafe": {"present"},
+    "latex2mathml": {"present"},
     "fastapi": {"web", "api", "server"},
     "starlette": {"web", "api", "server"},
     "pydantic": {"api"},

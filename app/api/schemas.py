@@ -1,83 +1,57 @@
-"""The documented shapes of requests and answers."""
+"""The documented shapes of requests and answers, one pair an endpoint."""
 
 from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import BaseModel, ConfigDict, Field
+from pydantic import Field
 
+from app.api.shapes import (
+    Level,
+    Limits,
+    MeasureAnswer,
+    NeededAnswer,
+    Number,
+    PAnswer,
+    Probability,
+    SegmentAnswer,
+    Shape,
+)
 from app.measures.fourfold import LARGEST_TOTAL
 
-Number = Annotated[float | Literal["inf", "-inf"] | None, Field(description='null is undefined, "inf" infinite')]
+EventIs = Literal["unwanted", "wanted"]
+Scale = Literal["ratio", "difference"]
+Events = Annotated[int, Field(ge=0, le=LARGEST_TOTAL)]
+Total = Annotated[int, Field(ge=1, le=LARGEST_TOTAL)]
+Positive = Annotated[float, Field(ge=1e-9, le=1e9)]
 
 
-class _Shape(BaseModel):
-    model_config = ConfigDict(extra="forbid")
-
-
-class Problem(_Shape):
-    """One thing that was refused."""
-
-    field: str
-    message: str
-    hint: str
-    slug: str
-
-
-class Problems(_Shape):
-    """The one shape of every error, whatever its status."""
-
-    problems: list[Problem]
-
-
-class ArmCounts(_Shape):
+class ArmCounts(Shape):
     """Events and people of one arm."""
 
-    events: Annotated[int, Field(ge=0, le=LARGEST_TOTAL)]
-    total: Annotated[int, Field(ge=1, le=LARGEST_TOTAL)]
+    events: Events
+    total: Total
 
 
-class EffectsRequest(_Shape):
+class EffectsRequest(Shape):
     """One fourfold table."""
 
     intervention: ArmCounts
     comparator: ArmCounts
-    confidence_level: Annotated[float, Field(ge=0.5, le=0.9999)] = 0.95
-    event_is: Literal["unwanted", "wanted"] = "unwanted"
+    confidence_level: Level = 0.95
+    event_is: EventIs = "unwanted"
+    design: Literal["trial", "cohort", "case_control"] = "trial"
+    exact_unconditional: bool = False
 
 
-class IntervalAnswer(_Shape):
-    """Limits by one method; null where it is undefined."""
-
-    method: str
-    low: Number
-    high: Number
-    default: bool
-
-
-class MeasureAnswer(_Shape):
-    """An estimate with every registered interval."""
-
-    estimate: Number
-    intervals: list[IntervalAnswer]
-
-
-class RisksAnswer(_Shape):
+class RisksAnswer(Shape):
     """The risk of each arm."""
 
     intervention: MeasureAnswer
     comparator: MeasureAnswer
 
 
-class SegmentAnswer(_Shape):
-    """One side of an interval of the number needed to treat."""
-
-    direction: Literal["benefit", "harm"]
-    low: Number
-    high: Number
-
-
-class NeededIntervalAnswer(_Shape):
+class NeededIntervalAnswer(Shape):
     """The inverted interval of one difference method."""
 
     method: str
@@ -85,39 +59,301 @@ class NeededIntervalAnswer(_Shape):
     default: bool
 
 
-class NeededAnswer(_Shape):
-    """Number needed to treat: unrounded, rounded by its rule, with its direction."""
+class NeededWithIntervals(NeededAnswer):
+    """Number needed to treat with its intervals."""
 
-    estimate: Number
-    rounded: float | None
-    rule: Literal["up", "down"] | None
-    direction: Literal["benefit", "harm", "none"]
     intervals: list[NeededIntervalAnswer]
 
 
-class EffectsOnly(_Shape):
-    """The measures of two arms."""
+class EffectsOnly(Shape):
+    """The measures of two arms; null where the design forbids one."""
 
-    risk_difference: MeasureAnswer
-    risk_ratio: MeasureAnswer
+    risk_difference: MeasureAnswer | None
+    risk_ratio: MeasureAnswer | None
     odds_ratio: MeasureAnswer
-    relative_risk_reduction: MeasureAnswer
-    number_needed_to_treat: NeededAnswer
+    relative_risk_reduction: MeasureAnswer | None
+    number_needed_to_treat: NeededWithIntervals | None
 
 
-class PAnswer(_Shape):
-    """P of no difference by one test; log10_p stays right where p is too small for a number."""
+class Refusal(Shape):
+    """A measure that the design forbids, and why."""
+
+    measure: str
+    why: str
+
+
+class EffectsAnswer(Shape):
+    """All that the counts alone give."""
+
+    risks: RisksAnswer | None
+    effects: EffectsOnly
+    p_values: list[PAnswer]
+    refused: list[Refusal]
+    version: str
+
+
+class ArmTime(Shape):
+    """Events and person-time of one arm."""
+
+    events: Events
+    person_time: Annotated[float, Field(ge=1e-3, le=1e9)]
+
+
+class RatesRequest(Shape):
+    """Events over person-time; `per` only adds scaled copies."""
+
+    intervention: ArmTime
+    comparator: ArmTime
+    confidence_level: Level = 0.95
+    per: Annotated[float, Field(ge=1e-3, le=1e9)] = 1
+
+
+class RatesOnly(Shape):
+    """The rate of each arm, per unit of person-time."""
+
+    intervention: MeasureAnswer
+    comparator: MeasureAnswer
+
+
+class Scaled(Shape):
+    """The same times `per`."""
+
+    per: float
+    rates: RatesOnly
+    rate_difference: MeasureAnswer
+
+
+class RatePAnswer(Shape):
+    """P of no difference in rates by one test."""
 
     test: str
     p: Number
-    log10_p: Number
     default: bool
 
 
-class EffectsAnswer(_Shape):
-    """All that the counts alone give."""
+class RatesAnswer(Shape):
+    """All that events over person-time give. No risk, and no number needed to treat."""
 
-    risks: RisksAnswer
-    effects: EffectsOnly
-    p_values: list[PAnswer]
+    rates: RatesOnly
+    rate_ratio: MeasureAnswer
+    rate_difference: MeasureAnswer
+    scaled: Scaled
+    p_values: list[RatePAnswer]
+    version: str
+
+
+class Stratum(Shape):
+    """One stratum."""
+
+    intervention: ArmCounts
+    comparator: ArmCounts
+
+
+class StrataRequest(Shape):
+    """Several tables of one comparison."""
+
+    strata: Annotated[list[Stratum], Field(min_length=1, max_length=1000)]
+    confidence_level: Level = 0.95
+
+
+class StrataTestAnswer(Shape):
+    """One test over strata."""
+
+    test: str
+    statistic: Number
+    df: int
+    p: Number
+
+
+class StrataAnswer(Shape):
+    """Pooled estimates and tests."""
+
+    odds_ratio: MeasureAnswer
+    risk_ratio: MeasureAnswer
+    risk_difference: MeasureAnswer
+    tests: list[StrataTestAnswer]
+    version: str
+
+
+class RatioLimits(Shape):
+    """A ratio with its limits."""
+
+    estimate: Positive
+    low: Positive
+    high: Positive
+
+
+class HazardRequest(Shape):
+    """A hazard ratio, and the comparator's risk (or survival) at the time."""
+
+    hazard_ratio: RatioLimits
+    comparator_risk: Probability | None = None
+    comparator_survival: Probability | None = None
+    ratio_is_for: Literal["event", "event_free"] = "event"
+    event_is: EventIs = "unwanted"
+
+
+class NeededWithSegments(NeededAnswer):
+    """Number needed to treat with the segments of its one interval."""
+
+    segments: list[SegmentAnswer]
+
+
+class HazardAnswer(Shape):
+    """Risk by the time, difference, and number needed to treat, the comparator's risk taken as known."""
+
+    risk_with: Limits
+    risk_difference: Limits
+    number_needed_to_treat: NeededWithSegments
+    assumes: str
+    version: str
+
+
+class BackRequest(Shape):
+    """An estimate with its limits, or with its p."""
+
+    scale: Scale
+    estimate: float
+    low: float | None = None
+    high: float | None = None
+    p: Annotated[float, Field(ge=1e-300, le=1)] | None = None
+    confidence_level: Level = 0.95
+
+
+class BackAnswer(Shape):
+    """What the other two follow from; by exact normal quantiles."""
+
+    z: Number
+    standard_error: Number
+    p: Number
+    low: Number
+    high: Number
+    version: str
+
+
+class TranslateRequest(Shape):
+    """A ratio, and starting risks."""
+
+    odds_ratio: Annotated[float, Field(ge=0, le=1e9)] | None = None
+    risk_ratio: Annotated[float, Field(ge=0, le=1e9)] | None = None
+    starting_risks: Annotated[list[Probability], Field(min_length=1, max_length=1000)]
+
+
+class Translated(Shape):
+    """The ratio at one starting risk; `risk_with` is null where it would be above 1."""
+
+    starting_risk: float
+    possible: bool
+    risk_with: Number
+    difference: Number
+    risk_ratio: Number
+
+
+class TranslateAnswer(Shape):
+    """The ratio at each starting risk."""
+
+    risks: list[Translated]
+    version: str
+
+
+class EValueRequest(Shape):
+    """An observational estimate."""
+
+    reported: Literal["RR", "OR_common_outcome", "HR_common_outcome"]
+    estimate: Positive
+    low: Positive
+    high: Positive
+
+
+class EValueAnswer(Shape):
+    """E-values of the estimate and of the limit nearer 1."""
+
+    risk_ratio: Number
+    e_value: Number
+    e_value_of_limit: Number
+    version: str
+
+
+class AnyLimits(Shape):
+    """An estimate with its limits."""
+
+    estimate: float
+    low: float
+    high: float
+
+
+class InteractionRequest(Shape):
+    """Two independent estimates of one scale."""
+
+    scale: Scale
+    first: AnyLimits
+    second: AnyLimits
+    confidence_level: Level = 0.95
+
+
+class InteractionAnswer(Shape):
+    """Whether they differ: ratio of ratios or difference of differences, first over second."""
+
+    contrast: Limits
+    difference: Number
+    standard_error: Number
+    z: Number
+    p: Number
+    version: str
+
+
+class ClusterRequest(Shape):
+    """Counts of a cluster-randomised trial."""
+
+    intervention: ArmCounts
+    comparator: ArmCounts
+    cluster_size: Annotated[float, Field(ge=1, le=1e9)]
+    intracluster_correlation: Probability
+    confidence_level: Level = 0.95
+
+
+class EffectiveArm(Shape):
+    """What an arm's counts are worth; not rounded."""
+
+    events: float
+    total: float
+
+
+class ClusterAnswer(Shape):
+    """Counts over the design effect, an approximation, and the risk ratio with its wider interval."""
+
+    design_effect: float
+    intervention: EffectiveArm
+    comparator: EffectiveArm
+    risk_ratio: Limits
+    version: str
+
+
+class PairedRequest(Shape):
+    """Pairs with the event on one side only."""
+
+    first_only: Events
+    second_only: Events
+
+
+class PairedAnswer(Shape):
+    """P of no difference within pairs."""
+
+    p_values: list[RatePAnswer]
+    version: str
+
+
+class ProbabilityRequest(Shape):
+    """One fourfold table, and the prior of both risks."""
+
+    intervention: ArmCounts
+    comparator: ArmCounts
+    prior: Literal["uniform", "jeffreys"] = "uniform"
+
+
+class ProbabilityAnswer(Shape):
+    """Posterior probability that the intervention's risk is the lower one."""
+
+    probability_lower: Probability
+    prior: str
     version: str

@@ -6,9 +6,9 @@ import json
 from dataclasses import asdict
 from typing import Any, TypeVar
 
-from app.appraisal.sheet import CONFIDENCE_LEVELS, EVENT_IS, FOLLOW_UP, Sheet, TypedArm, TypedOutcome
+from app.appraisal.sheet import CONFIDENCE_LEVELS, DESIGNS, EVENT_IS, FOLLOW_UP, Sheet, TypedArm, TypedOutcome
 
-VERSION = 1
+VERSION = 2
 
 _Choice = TypeVar("_Choice", bound=str)
 
@@ -40,9 +40,11 @@ def decode(text: str) -> Sheet:
         The text is not a sheet, or of a later version.
     """
     document = json.loads(text)
-    if not isinstance(document, dict) or document.get("version") != VERSION:
+    if not isinstance(document, dict) or document.get("version") not in range(1, VERSION + 1):
         raise ValueError("not a sheet of a known version")
     sheet = document["sheet"]
+    if document["version"] < 2:
+        sheet = {**sheet, "design": "trial"}  # the only design there was
     outcomes = tuple(
         TypedOutcome(
             name=_text(outcome["name"]),
@@ -60,5 +62,6 @@ def decode(text: str) -> Sheet:
         arms=tuple(_text(name) for name in sheet["arms"]),
         outcomes=outcomes,
         confidence_level=_choice(sheet["confidence_level"], CONFIDENCE_LEVELS),
+        design=_choice(sheet["design"], DESIGNS),
         invented=bool(sheet["invented"]),
     )

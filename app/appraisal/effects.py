@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -13,6 +13,7 @@ from app.measures.interval import Interval
 from app.measures.odds import odds_ratio
 from app.measures.ratio import risk_ratio
 from app.measures.registry import (
+    MEASURES,
     RISK_METHODS,
     TESTS,
     EffectMethod,
@@ -20,9 +21,14 @@ from app.measures.registry import (
     NoDifferenceTest,
     RiskMethod,
     effect_methods,
+    quick_tests,
 )
 
-ESTIMATES = {"risk_difference": risk_difference, "risk_ratio": risk_ratio, "odds_ratio": odds_ratio}
+ESTIMATES: Mapping[Measure, Callable[[Fourfold], Floats]] = {
+    "risk_difference": risk_difference,
+    "risk_ratio": risk_ratio,
+    "odds_ratio": odds_ratio,
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -35,10 +41,14 @@ class RiskResult:
 
 @dataclass(frozen=True, slots=True)
 class EffectResult:
-    """One measure of two arms in each table, with every registered interval, the default first."""
+    """One measure of two arms in each table, with every registered interval, the default first.
+
+    `own_estimates` holds, by key, those of the methods that do not report the raw one.
+    """
 
     estimate: Floats
     intervals: tuple[tuple[EffectMethod, Interval], ...]
+    own_estimates: Mapping[str, Floats]
 
     @property
     def default(self) -> tuple[EffectMethod, Interval]:
@@ -73,14 +83,26 @@ def risk_of(events: Counts, total: Counts, confidence_level: float) -> RiskResul
     return RiskResult(np.asarray(events / total), intervals)
 
 
-def effects_of(table: Fourfold, confidence_level: float) -> Effects:
-    """Every registered measure, interval and test for each of the tables."""
-    measures: dict[Measure, EffectResult] = {}
-    for measure, estimate in ESTIMATES.items():
-        methods = effect_methods(measure)  # type: ignore[arg-type]
-        intervals = tuple((method, method.interval(table, confidence_level)) for method in methods)
-        measures[measure] = EffectResult(estimate(table), intervals)  # type: ignore[index]
-    tests = tuple(TestResult(test, test.p(table), test.log_p(table) / np.log(10.0)) for test in TESTS)
+def _test(test: NoDifferenceTest, table: Fourfold) -> TestResult:
+    log_p = test.log_p(table)
+    return TestResult(test, np.asarray(np.exp(log_p)), np.asarray(log_p / np.log(10.0)))
+
+
+def effect_of(measure: Measure, table: Fourfold, confidence_level: float) -> EffectResult:
+    """One measure with every interval offered for it, for each of the tables."""
+    intervals = tuple((method, method.interval(table, confidence_level)) for method in effect_methods(measure))
+    own = {method.key: method.estimate(table) for method in effect_methods(measure) if method.estimate is not None}
+    return EffectResult(ESTIMATES[measure](table), intervals, own)
+
+
+def effects_of(table: Fourfold, confidence_level: float, *, exact_unconditional: bool = False) -> Effects:
+    """Every measure, interval and test offered, for each of the tables.
+
+    The exact unconditional tests take long in large tables and come only when asked for.
+    """
+    measures = {measure: effect_of(measure, table, confidence_level) for measure in MEASURES}
+    asked = tuple(test for test in TESTS if test.on_request) if exact_unconditional else ()
+    tests = tuple(_test(test, table) for test in quick_tests() + asked)
     return Effects(
         table,
         confidence_level,

@@ -7,7 +7,7 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import NamedTuple
 
-from app.appraisal.sheet import EventIs, FollowUp
+from app.appraisal.sheet import Design, EventIs, FollowUp
 from app.measures.needed import RoundedNeeded, Segment
 from app.measures.registry import EffectMethod, Measure, NoDifferenceTest, RiskMethod
 from app.printed.claims import Claim
@@ -20,10 +20,11 @@ class OutcomeInput:
     """One outcome: what is counted, and what is claimed of it."""
 
     claims: tuple[Claim, ...]
-    event_is: EventIs = "unwanted"
+    event_is: EventIs = "not_said"
     horizon: str = ""
     follow_up: FollowUp = "not_said"
     confidence_level: float = 0.95
+    design: Design = "trial"
 
 
 @dataclass(frozen=True, slots=True)

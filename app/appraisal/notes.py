@@ -81,6 +81,10 @@ def notes_on(
     if not both.fits.complete:
         notes.append(Note("too_many_tables", {"count": both.fits.count}))
     notes += _empty_cells(both.fits, given.confidence_level)
+    if given.design == "case_control":
+        notes.append(Note("case_control_refuses"))
+    elif given.event_is == "not_said":
+        notes.append(Note("wanted_not_said"))
     if given.follow_up != "fixed":
         notes.append(Note("naive_follow_up", {"follow_up": given.follow_up}))
     if not given.horizon:

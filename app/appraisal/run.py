@@ -89,7 +89,7 @@ def _both(intervention: RiskAppraisal, comparator: RiskAppraisal, given: Outcome
         )
         for measure, result in effects.measures.items()
     }
-    needed = _needed(effects, given.event_is == "unwanted")
+    needed = _needed(effects, given.event_is != "wanted")
     tests = tuple((result.test, _p_range(result.p, effects)) for result in effects.tests)
     return BothArms(intervention, comparator, fits, measures, needed, tests)
 

@@ -5,11 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import Literal
 
-EventIs = Literal["unwanted", "wanted"]
+EventIs = Literal["not_said", "unwanted", "wanted"]
 FollowUp = Literal["fixed", "varies", "not_said"]
 
-EVENT_IS: tuple[EventIs, ...] = ("unwanted", "wanted")
+Design = Literal["trial", "cohort", "case_control"]
+
+EVENT_IS: tuple[EventIs, ...] = ("not_said", "unwanted", "wanted")
 FOLLOW_UP: tuple[FollowUp, ...] = ("fixed", "varies", "not_said")
+DESIGNS: tuple[Design, ...] = ("trial", "cohort", "case_control")
 CONFIDENCE_LEVELS: tuple[str, ...] = ("90", "95", "99")
 
 
@@ -29,7 +32,7 @@ class TypedOutcome:
 
     name: str = ""
     counted: str = ""
-    event_is: EventIs = "unwanted"
+    event_is: EventIs = "not_said"
     horizon: str = ""
     follow_up: FollowUp = "not_said"
     arms: tuple[TypedArm, ...] = (TypedArm(), TypedArm())
@@ -40,7 +43,8 @@ class Sheet:
     """One paper as typed.
 
     `arms` are the names of the arms; a contrast takes the first as intervention, the second as
-    comparator. `invented` marks the examples.
+    comparator. `design` of a case-control study forbids all that needs a risk. `invented` marks the
+    examples.
     """
 
     title: str = ""
@@ -48,4 +52,5 @@ class Sheet:
     arms: tuple[str, ...] = ("", "")
     outcomes: tuple[TypedOutcome, ...] = field(default_factory=lambda: (TypedOutcome(),))
     confidence_level: str = "95"
+    design: Design = "trial"
     invented: bool = False

@@ -10,6 +10,10 @@ _SHOWN = 24  # how much of a refused text is shown back
 _SENTENCES: dict[str, tuple[str, str]] = {
     "too_long": ("This is too long to be one number.", "Type the number alone, such as {example}."),
     "not_a_number": ("“{shown}” is not a number.", "Type digits, such as {example}."),
+    "several_numbers": (
+        "“{shown}” holds more than one number.",
+        "Type one number here, such as {example}, and the others in their own boxes.",
+    ),
     "negative": ("A negative number cannot stand here.", "Type 0 or more, such as {example}."),
     "percent_sign_on_count": (
         "A percentage stands where people are counted.",
@@ -38,6 +42,18 @@ _SENTENCES: dict[str, tuple[str, str]] = {
     ),
     "text_too_long": ("This text is longer than {limit:,} characters.", "Shorten it; it is kept here until then."),
     "more_needed": ("{what}", "{how}"),
+    "contradicts_counts": (
+        "{events:,} of {total:,} is {share}%, not {printed}.",
+        "Check the three numbers; the figures below follow the counts.",
+    ),
+    "no_count_fits": (
+        "No whole number of people gives this percentage.",
+        "Check the total and the percentage; the note says which counts and totals come near.",
+    ),
+    "proportion_typed": (
+        "No whole number of people gives this percentage.",
+        "If {printed} is a proportion, type it as a percentage, {hundredfold}.",
+    ),
 }
 
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
+from decimal import Decimal
 from typing import cast
 
 from app.appraisal.fields import (
@@ -18,8 +19,10 @@ from app.appraisal.fields import (
 from app.appraisal.model import AppraisalInput, OutcomeInput
 from app.appraisal.sheet import (
     CONFIDENCE_LEVELS,
+    DESIGNS,
     EVENT_IS,
     FOLLOW_UP,
+    Design,
     EventIs,
     FollowUp,
     Sheet,
@@ -31,7 +34,7 @@ from app.intake.problems import printed_problem, problem
 from app.measures.fourfold import LARGEST_TOTAL
 from app.printed.claims import ARMS, Claim
 from app.printed.number import PrintedNumber, read_number
-from app.reconstruct.arm import arm_fits
+from app.reconstruct.arm import ArmFits, arm_fits
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,6 +79,7 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
         arms=tuple(text(arm_name_field(j), name) for j, name in enumerate(current.arms)),
         outcomes=tuple(outcomes),
         confidence_level=choice("confidence_level", CONFIDENCE_LEVELS, current.confidence_level),
+        design=cast("Design", choice("design", DESIGNS, current.design)),
     )
 
 
@@ -131,8 +135,27 @@ _NEEDED: dict[frozenset[str], tuple[ArmPart, str, str]] = {
 _UNBOUNDED: tuple[ArmPart, str, str] = ("total", "These two allow almost any total.", "Type how many were analysed.")
 
 
+def _advice(outcome: int, arm: int, parts: frozenset[str], fits: ArmFits, typed: TypedArm) -> FieldProblem | None:
+    """What one arm still needs, or what does not go together in it; None where it is settled."""
+    percentage = arm_field(outcome, arm, "percentage")
+    printed = typed.percentage.strip()
+    if fits.status in ("nothing", "too_little"):
+        part, what, how = _NEEDED.get(parts, _UNBOUNDED)
+        return problem(arm_field(outcome, arm, part), "more_needed", what=what, how=how)
+    if fits.status == "contradiction" and fits.runs:
+        run = fits.runs[0]
+        share = f"{Decimal(100 * run.first) / Decimal(run.total):.2f}"
+        return problem(percentage, "contradicts_counts", events=run.first, total=run.total, share=share, printed=printed)
+    if fits.status == "none_fits":
+        value = read_number(printed, "percentage").value
+        if 0 < value < 1:
+            return problem(percentage, "proportion_typed", printed=printed, hundredfold=f"{100 * value:f}")
+        return problem(percentage, "no_count_fits")
+    return None
+
+
 def needs(sheet: Sheet, outcome: int, gathered: Gathered) -> tuple[FieldProblem, ...]:
-    """What the arms of one outcome still lack before anything follows from them.
+    """What the arms of one outcome still lack, or what does not go together in them.
 
     Nothing is asked of a sheet that is empty, nor of an arm that has a refused box.
     """
@@ -145,9 +168,9 @@ def needs(sheet: Sheet, outcome: int, gathered: Gathered) -> tuple[FieldProblem,
     for j, (arm, parts) in enumerate(zip(ARMS, have, strict=False)):
         if any(arm_field(outcome, j, spec.part) in refused for spec in NUMBER_FIELDS):
             continue
-        if arm_fits(arm, gathered.input.outcomes[outcome].claims).status in ("nothing", "too_little"):
-            part, what, how = _NEEDED.get(parts, _UNBOUNDED)
-            found.append(problem(arm_field(outcome, j, part), "more_needed", what=what, how=how))
+        advice = _advice(outcome, j, parts, arm_fits(arm, gathered.input.outcomes[outcome].claims), typed[j])
+        if advice is not None:
+            found.append(advice)
     return tuple(found)
 
 
@@ -186,7 +209,12 @@ def gather(sheet: Sheet) -> Gathered:
                 claims += mine
         outcomes.append(
             OutcomeInput(
-                tuple(claims), outcome.event_is, outcome.horizon.strip(), outcome.follow_up, int(sheet.confidence_level) / 100
+                tuple(claims),
+                outcome.event_is,
+                outcome.horizon.strip(),
+                outcome.follow_up,
+                int(sheet.confidence_level) / 100,
+                sheet.design,
             )
         )
     return Gathered(AppraisalInput(tuple(outcomes)), tuple(problems), read_as)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
@@ -15,8 +16,8 @@ LARGEST_TOTAL = 10**9
 """Largest people per arm: cross products of two totals stay exact in 64-bit integers."""
 
 
-def _whole(name: str, values: ArrayLike) -> Counts:
-    """Check that `values` are whole numbers and return them as int64, never rounding."""
+def whole_numbers(name: str, values: ArrayLike) -> Counts:
+    """Counts as int64, refused unless whole, from 0 and at most `LARGEST_TOTAL`; never rounded."""
     array = np.asarray(values)
     if array.dtype.kind == "b" or array.dtype.kind not in "iuf":
         raise TypeError(f"{name} must be whole numbers, got {array.dtype}")
@@ -58,7 +59,7 @@ class Fourfold:
     ) -> None:
         names = ("events_intervention", "total_intervention", "events_comparator", "total_comparator")
         given = (events_intervention, total_intervention, events_comparator, total_comparator)
-        arrays = np.broadcast_arrays(*(_whole(n, v) for n, v in zip(names, given, strict=True)))
+        arrays = np.broadcast_arrays(*(whole_numbers(n, v) for n, v in zip(names, given, strict=True)))
         for events, total in ((0, 1), (2, 3)):
             if bool(np.any(arrays[total] < 1)):
                 raise ValueError(f"{names[total]} must be at least 1")
@@ -95,6 +96,16 @@ class Fourfold:
         """The four counts (a, n1, c, n2) as floats, for formulas."""
         a, n1, c, n2 = (np.asarray(x, dtype=np.float64) for x in self._integers())
         return a, n1, c, n2
+
+    def blocks(self, size: int) -> Iterator[Fourfold]:
+        """The tables as 1-d arrays of at most `size`, not checked again."""
+        flat = [np.ravel(x) for x in self._integers()]
+        names = ("events_intervention", "total_intervention", "events_comparator", "total_comparator")
+        for first in range(0, flat[0].size, size):
+            block = object.__new__(Fourfold)
+            for name, column in zip(names, flat, strict=True):
+                object.__setattr__(block, name, column[first : first + size])
+            yield block
 
     def swapped(self) -> Fourfold:
         """The same tables with the arms exchanged."""

@@ -2,11 +2,17 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+from functools import wraps
 from typing import NamedTuple
 
+import numpy as np
 from scipy import special
 
-from app.measures.fourfold import Floats
+from app.measures.fourfold import Floats, Fourfold
+
+BLOCK = 8192
+"""Tables computed at a time: their temporaries stay in the second-level cache."""
 
 
 class Interval(NamedTuple):
@@ -14,6 +20,25 @@ class Interval(NamedTuple):
 
     low: Floats
     high: Floats
+
+
+def single(low: float, high: float) -> Interval:
+    """One pair of limits."""
+    return Interval(np.asarray(low), np.asarray(high))
+
+
+def blockwise(method: Callable[[Fourfold, float], Interval]) -> Callable[[Fourfold, float], Interval]:
+    """The same method, computed on blocks whose temporaries stay in the processor's cache."""
+
+    @wraps(method)
+    def in_blocks(table: Fourfold, confidence_level: float = 0.95) -> Interval:
+        if table.events_intervention.size <= BLOCK:
+            return method(table, confidence_level)
+        ends = [method(block, confidence_level) for block in table.blocks(BLOCK)]
+        low, high = (np.concatenate([end[i] for end in ends]).reshape(table.shape) for i in (0, 1))
+        return Interval(low, high)
+
+    return in_blocks
 
 
 def normal_quantile(confidence_level: float) -> float:

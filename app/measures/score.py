@@ -18,53 +18,10 @@ from collections.abc import Callable
 import numpy as np
 
 from app.measures.fourfold import Floats, Fourfold
-from app.measures.interval import Interval, normal_quantile
-
-_BLOCK = 8192  # temporaries of one block stay in the processor's second-level cache
-_STEP = 1e-8  # Newton is quadratic: a relative step below this, once applied, leaves 1e-15
-_CLOSED = 1e-15  # halving is not quadratic: it ends only when the bracket has closed
-_PATIENCE = 9  # nearly all rows need 4 to 6 steps
-_MOST_STEPS = 150
+from app.measures.interval import BLOCK, Interval, normal_quantile
+from app.measures.roots import Equation, root_in_bracket
 
 _Lower = Callable[[Floats, Floats, Floats, Floats, Floats], Floats]
-_Function = Callable[[Floats, tuple[Floats, ...]], tuple[Floats, Floats]]
-
-
-def _newton(function: _Function, start: Floats, low: Floats, high: Floats, terms: tuple[Floats, ...]) -> Floats:
-    """Root of an increasing function by Newton's method kept inside [low, high].
-
-    `function(x, terms)` returns value and slope; `terms` are its per-row coefficients. Rows that have
-    converged are dropped from the third step on. Where the slope jumps (an empty cell at the point where
-    its restricted risk leaves 0) Newton can swing between two sides for ever, so that after a few steps
-    a step that does not halve the one before it is replaced by halving the bracket.
-    """
-    root = start.copy()
-    rows = np.arange(root.size)
-    x, low, high = start.copy(), low.copy(), high.copy()
-    last = np.full_like(x, np.inf)
-    for step in range(_MOST_STEPS):
-        value, slope = function(x, terms)
-        below = value < 0.0
-        low = np.where(below, x, low)
-        high = np.where(below, high, x)
-        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
-            following = x - value / slope
-        halved = ~((following >= low) & (following <= high))
-        if step >= _PATIENCE:
-            halved |= np.abs(following - x) > 0.5 * last
-        if halved.any():
-            following = np.where(halved, low + 0.5 * (high - low), following)
-        last = np.abs(following - x)
-        moving = last > np.where(halved, _CLOSED, _STEP) * np.abs(following)
-        x = following
-        if step < 2 and moving.any():
-            continue
-        root[rows] = x
-        if not moving.any():
-            break
-        rows, x, low, high, last = rows[moving], x[moving], low[moving], high[moving], last[moving]
-        terms = tuple(term[moving] for term in terms)
-    return root
 
 
 def _difference_equation(multiplier: Floats, terms: tuple[Floats, ...]) -> tuple[Floats, Floats]:
@@ -101,7 +58,7 @@ def _lower_difference(a: Floats, n1: Floats, c: Floats, n2: Floats, zz: Floats) 
     high = np.maximum((zz + n1 + n2) / reach, low)
     p1, p2 = (a + 0.5) / (n1 + 1.0), (c + 0.5) / (n2 + 1.0)
     start = np.clip(goal / np.sqrt(p1 * (1.0 - p1) / n1 + p2 * (1.0 - p2) / n2), low, high)
-    multiplier = _newton(_difference_equation, start, low, high, (goal, n1 - a, n1, c, n2))
+    multiplier = root_in_bracket(_difference_equation, start, low, high, (goal, n1 - a, n1, c, n2))
     # The point estimate less zz / L, not the difference of two fitted risks: nothing cancels.
     limit[rows] = (a * n2 - c * n1) / (n1 * n2) - zz / multiplier
     return limit
@@ -170,7 +127,7 @@ def _lower_odds(a: Floats, n1: Floats, c: Floats, n2: Floats, zz: Floats) -> Flo
     return limit
 
 
-def _from_the_right(function: _Function, at_zero: Floats, zz: Floats, end: Floats, terms: tuple[Floats, ...]) -> Floats:
+def _from_the_right(function: Equation, at_zero: Floats, zz: Floats, end: Floats, terms: tuple[Floats, ...]) -> Floats:
     """The positive root of a convex function in (0, end], reached by Newton's method from its right.
 
     `at_zero` is minus zz H at the cells plus a quarter, which places the first guess. From a point left
@@ -181,7 +138,7 @@ def _from_the_right(function: _Function, at_zero: Floats, zz: Floats, end: Float
     start = np.where(start < end, start, end)
     value, _ = function(start, terms)
     start = np.where(value >= 0.0, start, end)
-    return _newton(function, start, np.zeros_like(end), end, terms)
+    return root_in_bracket(function, start, np.zeros_like(end), end, terms)
 
 
 def _limits(table: Fourfold, confidence_level: float, corrected: bool, lower: _Lower) -> tuple[Floats, Floats]:
@@ -189,8 +146,8 @@ def _limits(table: Fourfold, confidence_level: float, corrected: bool, lower: _L
     z = normal_quantile(confidence_level)
     a, n1, c, n2 = (np.ravel(x) for x in table.floats())
     low, high = np.empty_like(a), np.empty_like(a)
-    for first in range(0, a.size, _BLOCK):
-        block = slice(first, first + _BLOCK)
+    for first in range(0, a.size, BLOCK):
+        block = slice(first, first + BLOCK)
         cells = a[block], n1[block], c[block], n2[block]
         total = cells[1] + cells[3]
         zz = z * z * (total / (total - 1.0) if corrected else np.ones_like(total))
@@ -244,6 +201,27 @@ def miettinen_nurminen_ratio(table: Fourfold, confidence_level: float = 0.95) ->
     miettinen_nurminen_1985, equations 10 and 11.
     """
     return _ratio_interval(table, confidence_level, True, _lower_ratio)
+
+
+def mee(table: Fourfold, confidence_level: float = 0.95) -> Interval:
+    """Score interval for the risk difference without the factor N/(N-1); edge cases as for the corrected one.
+
+    References
+    ----------
+    mee_1984; farrington_manning_1990.
+    """
+    low, swapped = _limits(table, confidence_level, False, _lower_difference)
+    return Interval(low, -swapped)
+
+
+def cornfield_score(table: Fourfold, confidence_level: float = 0.95) -> Interval:
+    """Score interval for the odds ratio without the factor N/(N-1); edge cases as for the corrected one.
+
+    References
+    ----------
+    cornfield_1956.
+    """
+    return _ratio_interval(table, confidence_level, False, _lower_odds)
 
 
 def koopman(table: Fourfold, confidence_level: float = 0.95) -> Interval:

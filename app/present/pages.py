@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import datetime
 
 from app.appraisal.fields import NUMBER_FIELDS, arm_field, arm_name_field, outcome_field
 from app.appraisal.model import Appraisal
-from app.appraisal.sheet import CONFIDENCE_LEVELS, Sheet, TypedArm
+from app.appraisal.sheet import CONFIDENCE_LEVELS, Sheet, TypedArm, TypedOutcome
 from app.errors import FieldProblem
 from app.present.numerals import fixed
 from app.present.results import ResultsView, results_view
@@ -28,6 +28,7 @@ class FieldView:
     message: str = ""
     hint: str = ""
     refused: bool = False
+    focus: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -100,6 +101,9 @@ class SheetView:
     event_is: ChoiceView
     follow_up: ChoiceView
     confidence_level: ChoiceView
+    design: ChoiceView
+    typed: tuple[str, ...]
+    also: str
     columns: tuple[str, ...]
     arms: tuple[ArmBoxes, ...]
     results: ResultsView
@@ -129,7 +133,8 @@ class ProblemView:
     version: str
 
 
-EVENT_IS_TEXT = {"unwanted": "unwanted", "wanted": "wanted"}
+EVENT_IS_TEXT = {"not_said": "not said", "unwanted": "unwanted", "wanted": "wanted"}
+DESIGN_TEXT = {"trial": "trial", "cohort": "cohort", "case_control": "case-control"}
 FOLLOW_UP_TEXT = {"not_said": "not said", "fixed": "same fixed time", "varies": "varies or censored"}
 
 
@@ -166,6 +171,31 @@ def shelf_line(sheet_id: str, sheet: Sheet, saved: datetime, now: datetime) -> S
 
 def _heading(sheet: Sheet) -> str:
     return sheet.title.strip() or "Untitled sheet"
+
+
+def _typed(sheet: Sheet, shown: int) -> tuple[str, ...]:
+    """What is typed, as lines for paper, where boxes would cut it."""
+    outcome = sheet.outcomes[shown]
+    about = [
+        outcome.name.strip(),
+        f"counted: {outcome.counted.strip()}" if outcome.counted.strip() else "",
+        f"event {EVENT_IS_TEXT[outcome.event_is]}",
+        f"time: {outcome.horizon.strip()}" if outcome.horizon.strip() else "time not stated",
+        f"follow-up {FOLLOW_UP_TEXT[outcome.follow_up]}",
+        DESIGN_TEXT[sheet.design],
+    ]
+    lines = ["; ".join(part for part in about if part)]
+    for j, arm in enumerate(outcome.arms):
+        numbers = [f"{spec.label.lower()} {value}" for spec in NUMBER_FIELDS if (value := getattr(arm, spec.part).strip())]
+        if numbers:
+            lines.append(f"{sheet.arms[j].strip() or ARMS[j].capitalize()}: {', '.join(numbers)}")
+    return tuple(lines)
+
+
+def _also(sheet: Sheet, shown: int) -> str:
+    """The other outcomes of a sheet, for paper that shows one."""
+    others = [o.name.strip() or f"outcome {i + 1}" for i, o in enumerate(sheet.outcomes) if i != shown]
+    return f"Also on this sheet: {', '.join(others)}." if others else ""
 
 
 class _Fields:
@@ -244,14 +274,20 @@ def sheet_view(
         add_outcome="" if saved is None else f"/sheet/{sheet_id}/outcome",
         title=fields.box("title", "Title of the paper", sheet.title, "Title of the paper"),
         reference=fields.box("reference", "Where it is from", sheet.reference, "Journal and year, or where it is from"),
-        outcome_name=fields.box(outcome_field(shown, "name"), "Outcome", outcome.name, "Recurrence"),
-        counted=fields.box(outcome_field(shown, "counted"), "What is counted", outcome.counted, "a recurrence"),
+        outcome_name=replace(
+            fields.box(outcome_field(shown, "name"), "Outcome", outcome.name, "Recurrence"),
+            focus=shown > 0 and outcome == TypedOutcome(horizon=outcome.horizon, follow_up=outcome.follow_up),
+        ),
+        counted=fields.box(outcome_field(shown, "counted"), "What is counted (a noun)", outcome.counted, "a recurrence"),
         horizon=fields.box(outcome_field(shown, "horizon"), "Time it refers to", outcome.horizon, "12 months"),
         event_is=_choice(outcome_field(shown, "event_is"), "The event is", EVENT_IS_TEXT, outcome.event_is),
         follow_up=_choice(outcome_field(shown, "follow_up"), "Follow-up", FOLLOW_UP_TEXT, outcome.follow_up),
         confidence_level=_choice(
-            "confidence_level", "Level", {level: f"{level}%" for level in CONFIDENCE_LEVELS}, sheet.confidence_level
+            "confidence_level", "Confidence level", {level: f"{level}%" for level in CONFIDENCE_LEVELS}, sheet.confidence_level
         ),
+        design=_choice("design", "Design", DESIGN_TEXT, sheet.design),
+        typed=_typed(sheet, shown),
+        also=_also(sheet, shown),
         columns=tuple(spec.label for spec in NUMBER_FIELDS),
         arms=tuple(fields.arm(j, shown, sheet.arms[j], typed) for j, typed in enumerate(outcome.arms)),
         results=results_view(appraisal.outcomes[shown], names_of(sheet, shown)),

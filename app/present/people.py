@@ -7,9 +7,9 @@ from dataclasses import dataclass
 
 from markupsafe import Markup
 
-from app.appraisal.model import BothArms
+from app.appraisal.model import BothArms, OutcomeInput
 from app.present.figures.icons import icon_array
-from app.present.numerals import decimals_showing_sides, fixed, needed, sizes, spread
+from app.present.numerals import fixed, needed, sizes, spread
 from app.present.wording import FEWER_MORE, Names, signed_spread
 
 
@@ -29,18 +29,19 @@ class ArrayView:
     name: str
     key: str
     figure: Markup
+    caption: str
     lines: tuple[KeyLine, ...]
 
 
 @dataclass(frozen=True, slots=True)
 class PeopleView:
-    """Both arrays, the sentence of both, and the range in people."""
+    """Both arrays, and the sentence: its lead in full weight, and the rest."""
 
     out_of: str
     when: str
     arrays: tuple[ArrayView, ...]
-    sentence: str
-    range: str
+    lead: str
+    rest: str
     drawn: str
 
 
@@ -61,12 +62,12 @@ def round_half_up(value: float) -> int:
     return int(fixed(value, 0).replace(",", ""))
 
 
-def _exactly(value: float, count: int) -> str:
-    decimals = decimals_showing_sides((value,), 1, (0.0, float(count)))
-    return "" if abs(value - count) < 0.005 else f" (exactly {fixed(value, decimals)})"
+def _beside(value: float, count: int) -> str:
+    """The unrounded figure in brackets, where it is not the drawn one."""
+    return "" if abs(value - count) < 0.05 else f" ({fixed(value, 1)})"
 
 
-def people_view(both: BothArms, names: Names, confidence_level: float) -> PeopleView:
+def people_view(both: BothArms, names: Names, given: OutcomeInput) -> PeopleView:
     """The people of one outcome, drawn for the table in the middle where several fit."""
     middle = both.fits.middle
     risks = float(middle.risk_intervention), float(middle.risk_comparator)
@@ -76,53 +77,107 @@ def people_view(both: BothArms, names: Names, confidence_level: float) -> People
     net = abs(treated - control)
     event = min(treated, control)
     arrays = (
-        _array(names.comparator, "comparator", control, 0, False, out_of, risks[1], names),
-        _array(names.intervention, "intervention", event, net, more, out_of, risks[0], names),
+        _array(names.row("comparator"), "comparator", control, 0, False, out_of, risks[1], names),
+        _array(names.row("intervention"), "intervention", event, net, more, out_of, risks[0], names),
     )
-    several = both.fits.count > 1
+    drawn = ""
+    if both.fits.count > 1:
+        a, n1, c, n2 = (fixed(float(x), 0) for x in middle.floats())
+        drawn = f"Drawn for {a} of {n1} and {c} of {n2}, one table of the {fixed(both.fits.count, 0)} that fit."
+    rare = any(0 < risk < 0.5 / out_of for risk in risks) and max(treated, control) <= 1
     return PeopleView(
         out_of=str(out_of),
         when=names.within.strip() or "time not stated",
-        arrays=arrays,
-        sentence=_sentence(both, names),
-        range=_range(both, confidence_level),
-        drawn=f"Drawn for one table of the {fixed(both.fits.count, 0)} that fit." if several else "",
+        arrays=() if rare else arrays,
+        lead=_lead(both, names, given),
+        rest=_rest(both, names, given),
+        drawn="Too rare to draw: one or nobody in 1000 would be marked." if rare else drawn,
     )
 
 
 def _array(name: str, key: str, event: int, net: int, more: bool, out_of: int, risk: float, names: Names) -> ArrayView:
     with_event = event + net if more else event
-    without = out_of - with_event
-    lines = [KeyLine("with-event", str(with_event), f"with {names.counted}{_exactly(out_of * risk, with_event)}")]
-    if net and more:
-        lines.append(KeyLine("net-more", str(net), "of them net more than with the comparator"))
-    lines.append(KeyLine("no-event", str(without), "without"))
-    if net and not more:
-        lines.append(KeyLine("net-fewer", str(net), "of them net fewer than with the comparator"))
+    caption = (
+        f"{with_event} of {out_of} with {names.counted}{_beside(out_of * risk, with_event)}, {out_of - with_event} without"
+    )
+    other = names.comparator
+    if more and net:
+        lines = [
+            KeyLine("with-event", str(event), "with it, either way on balance"),
+            KeyLine("net-more", str(net), f"more than with {other}, on balance"),
+            KeyLine("no-event", str(out_of - event - net), "without"),
+        ]
+    elif net:
+        lines = [
+            KeyLine("with-event", str(event), "with it"),
+            KeyLine("net-fewer", str(net), f"fewer than with {other}, on balance"),
+            KeyLine("no-event", str(out_of - event - net), "without, either way on balance"),
+        ]
+    else:
+        lines = [KeyLine("with-event", str(event), "with it"), KeyLine("no-event", str(out_of - event), "without")]
     words = ", ".join(f"{line.count} {line.text}" for line in lines)
-    description = f"{name}: of {out_of} people{names.within}, {words}."
-    return ArrayView(
-        name, key, icon_array(event, net, more=more, out_of=out_of, arm=key, description=description), tuple(lines)
-    )
+    description = f"{name}: {caption}{names.within}. Drawn: {words}."
+    figure = icon_array(event, net, more=more, out_of=out_of, arm=key, description=description)
+    return ArrayView(name, key, figure, caption, tuple(lines))
 
 
-def _sentence(both: BothArms, names: Names) -> str:
-    result = both.needed
-    if result.rounded is None:
-        if result.direction == "none":
-            return f"The two arms had {names.counted} equally often."
-        return "The tables that fit differ in direction: some have fewer, some more."
-    numbers = spread([needed(r.value, r.decimals) for r in result.rounded])
-    word = "fewer" if both.measures["risk_difference"].estimate.high < 0 else "more"
-    return (
-        f"On average, for every {numbers} people with {names.intervention} rather than {names.comparator}, "
-        f"one {word} has {names.counted}{names.within}."
-    )
-
-
-def _range(both: BothArms, confidence_level: float) -> str:
+def _anything_from(both: BothArms) -> str:
     interval = both.measures["risk_difference"].default
     ends: Sequence[float] = (interval.low.low, interval.high.high)
-    text = signed_spread(ends, sizes(ends, 1000.0, 0), FEWER_MORE)
-    level = fixed(100 * confidence_level, 0)
-    return f"The trial fits anything from {text} in every 1000 ({level}% interval)."
+    return f"anything from {signed_spread(ends, sizes(ends, 1000.0, 0), FEWER_MORE)} in every 1000"
+
+
+def _settled(both: BothArms) -> bool:
+    """Whether the interval lies on one side of no difference."""
+    return len(both.needed.segments) == 1
+
+
+def _point(both: BothArms, names: Names, given: OutcomeInput) -> str:
+    """The estimate as people: per number needed to treat, or of every 100 where that is below 10."""
+    result = both.needed
+    estimate = both.measures["risk_difference"].estimate
+    fewer = estimate.high < 0
+    word = "fewer" if fewer else "more"
+    rather = f"with {names.intervention} rather than {names.comparator}"
+    if result.rounded is None:
+        return "the tables that fit differ in direction"
+    if any(r.decimals for r in result.rounded):
+        count = spread(sorted(sizes(estimate, 100.0, 0), key=float))
+        sentence = f"of every 100 people {rather}, {count} {word} have {names.counted}{names.within}"
+    else:
+        numbers = spread([needed(r.value, r.decimals) for r in result.rounded])
+        sentence = f"for every {numbers} people {rather}, one {word} has {names.counted}{names.within}"
+    if given.event_is == "wanted":
+        sentence += ", the unwanted direction" if fewer else ", the wanted direction"
+    return sentence
+
+
+def _lead(both: BothArms, names: Names, given: OutcomeInput) -> str:
+    """The sentence in full weight: the estimate if the interval settles its direction, else the interval."""
+    if given.follow_up != "fixed":
+        return "Counted as if all were followed equally long: " + _lower_first(_told(both, names, given))
+    return _told(both, names, given)
+
+
+def _told(both: BothArms, names: Names, given: OutcomeInput) -> str:
+    difference = both.measures["risk_difference"].estimate
+    tables = both.fits.tables
+    if not tables.events_intervention.any() and not tables.events_comparator.any():
+        return f"Nobody in either arm had {names.counted}."
+    if difference == (0.0, 0.0):
+        return f"The two arms had {names.counted} equally often."
+    if not _settled(both):
+        return f"The trial does not settle the direction: it fits {_anything_from(both)}."
+    return f"On average, {_point(both, names, given)}."
+
+
+def _rest(both: BothArms, names: Names, given: OutcomeInput) -> str:
+    """The other half: the interval, or the estimate where the interval leads."""
+    level = f"{fixed(100 * given.confidence_level, 0)}% interval"
+    if both.measures["risk_difference"].estimate == (0.0, 0.0) or _settled(both):
+        return f"The trial fits {_anything_from(both)} ({level})."
+    return f"({level}.) As seen, {_point(both, names, given)}."
+
+
+def _lower_first(text: str) -> str:
+    return text[:1].lower() + text[1:]

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
 from app.appraisal.model import Note
+from app.appraisal.sheet import EventIs
 from app.present.numerals import fixed, people, percentages, ratios, spread
 from app.reconstruct.arm import Run
 
@@ -19,7 +21,16 @@ CAUTIONS: tuple[str, ...] = (
 )
 """Standing cautions of every sheet, hand-out and export."""
 
-NAIVE = {"varies": "follow-up varies", "not_said": "follow-up not said", "fixed": ""}
+NAIVE = {"varies": "naive: follow-up varies", "not_said": "naive if follow-up varies", "fixed": ""}
+
+DIRECTIONS: Mapping[EventIs, Mapping[str, str]] = {
+    "not_said": {"benefit": "for one fewer", "harm": "for one more"},
+    "unwanted": {"benefit": "to benefit", "harm": "to harm"},
+    "wanted": {"benefit": "to benefit", "harm": "to harm"},
+}
+"""How a direction of the number needed to treat is said; without benefit and harm until the reader says which is which."""
+
+_LEADING = re.compile(r"^(?:at|within|by|over|after|in|during)\s+", re.IGNORECASE)
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,6 +47,11 @@ class Names:
         """The name of an arm by its key."""
         return self.intervention if key == "intervention" else self.comparator
 
+    def row(self, key: object) -> str:
+        """The name of an arm as it heads a row or a picture."""
+        plain = {"the intervention": "Intervention", "the comparator": "Comparator"}
+        return plain.get(self.arm(key), self.arm(key))
+
     def start(self, key: object) -> str:
         """The name of an arm as it begins a sentence."""
         name = self.arm(key)
@@ -44,9 +60,10 @@ class Names:
     @property
     def within(self) -> str:
         """The horizon as it ends a clause, with its leading blank; empty if not typed."""
-        if not self.horizon:
+        bare = _LEADING.sub("", self.horizon)
+        if not bare:
             return ""
-        return f" within {self.horizon}" if self.fixed_time else f" over {self.horizon}"
+        return f" within {bare}" if self.fixed_time else f" over {bare}"
 
 
 @dataclass(frozen=True, slots=True)
@@ -120,7 +137,7 @@ def _truncated(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     return (
         "More counts if digits were cut off",
         f"{names.start(evidence['arm'])}: {_people_of(evidence['run'])} of {people(evidence['total'])} would print so only "
-        "if further digits were cut off instead of rounded. Not carried on.",
+        "if further digits were cut off instead of rounded. Not used here.",
     )
 
 
@@ -137,23 +154,23 @@ def _last_digit(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
 def _naive(evidence: Mapping[str, Any], _names: Names) -> tuple[str, str]:
     if evidence["follow_up"] == "varies":
         body = (
-            "Follow-up varies or people are censored: risk difference and number needed to treat from counts are naive. "
+            "Follow-up varies or people are censored: the figures from counts are naive. "
             "Use risks at a fixed time where the paper gives them."
         )
     else:
         body = (
-            "Whether everyone was followed for the same time is not said. If not, risk difference and number needed to "
-            "treat from counts are naive. Say it under Follow-up."
+            "Whether everyone was followed for the same time is not said. If not, the figures from counts are naive: "
+            "say it under Follow-up."
         )
-    return "Naive if follow-up varies", body
+    return ("Follow-up varies: naive figures" if evidence["follow_up"] == "varies" else "Follow-up not said"), body
 
 
 def _odds_part(evidence: Mapping[str, Any], _names: Names) -> tuple[str, str]:
     odds, ratio = (spread(ratios(evidence[key])) for key in ("odds_ratio", "risk_ratio"))
     return (
-        "Odds are not risks here",
-        f"The event is common enough that the two part: an odds ratio of {odds} stands beside a risk ratio of {ratio}. "
-        "Read the first as odds only.",
+        "Do not read the odds ratio as a risk ratio",
+        f"The event is common enough that the two differ: an odds ratio of {odds} stands beside a risk ratio of {ratio}. "
+        "The first speaks of odds only.",
     )
 
 
@@ -163,8 +180,8 @@ def _no_events(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     return (
         "No events in either arm",
         "The trial holds no information on the ratio, only an upper limit of each risk: "
-        f"{first}% with {names.intervention}, {second}% with {names.comparator} (upper end of the exact {level}% "
-        "interval). In the head: about 3 divided by the people.",
+        f"{first}% with {names.intervention}, {second}% with {names.comparator} (upper end of the exact two-sided "
+        f"{level}% interval). The rule of thumb for a one-sided 95% limit is 3 divided by the number analysed.",
     )
 
 
@@ -191,10 +208,22 @@ _NOTES: dict[str, Callable[[Mapping[str, Any], Names], tuple[str, str]]] = {
     ),
     "no_events_in_intervention": _fixed(
         "No events in the intervention arm",
-        "The ratios are 0 and only their upper limits are informative. No half event is added to the empty cell.",
+        "The ratios are 0 and only their upper limits inform: none seen is not proof of none. No half event is added to the "
+        "empty cell.",
     ),
     "all_have_the_event": _fixed(
-        "Everybody has the event", "The odds ratio cannot be stated; the log interval for the risk ratio has no width here."
+        "Everybody has the event",
+        "The odds ratio cannot be stated. Of the other methods for the risk ratio, the log interval has no width here.",
+    ),
+    "wanted_not_said": _fixed(
+        "Wanted or unwanted?",
+        "Say under “The event is” whether fewer or more of it is better. Until then nothing is called benefit or harm.",
+    ),
+    "case_control_refuses": _fixed(
+        "Case-control: odds ratio only",
+        "The numbers of cases and controls were chosen, so these totals hold no risk: no risk difference, "
+        "risk ratio, relative reduction or number needed to treat can be had from them. Cases stand as the intervention, "
+        "controls as the comparator, the exposed as those with the event.",
     ),
     "time_not_stated": _fixed(
         "Time not stated", "An absolute difference belongs to a time. Type the time that the counts refer to."

@@ -32,6 +32,8 @@ _SHAPE = re.compile(
     rf"(?P<body>(?:[0-9]{{1,3}}(?:(?P<group>{_GROUPING})[0-9]{{3}}(?:(?P=group)[0-9]{{3}})*)|[0-9]+)?"
     rf"(?:(?P<mark>{_DECIMAL})(?P<decimals>[0-9]*))?)"
 )
+_FIGURES = re.compile(r"(?<![0-9a-zA-Z])[0-9]+(?![0-9a-zA-Z])")
+_SEVERAL = re.compile(rf"(?:[0-9{_BLANKS}{_RAISED}.,/()%=:;]|of|n)+", re.IGNORECASE)  # "46/418 (11.0%)", "71 of 412"
 _PERCENT = re.compile(rf"[{_BLANKS}]*(?:%|\uff05|per cent|percent)$", re.IGNORECASE)
 
 
@@ -81,7 +83,7 @@ def read_number(text: str, kind: Kind) -> PrintedNumber:
     Raises
     ------
     PrintedProblem
-        `too_long`, `not_a_number`, `negative`, `percent_sign_on_count`, `count_with_decimals`.
+        `too_long`, `not_a_number`, `several_numbers`, `negative`, `percent_sign_on_count`, `count_with_decimals`.
     """
     if len(text) > LONGEST:
         raise PrintedProblem("too_long", text)
@@ -91,7 +93,8 @@ def read_number(text: str, kind: Kind) -> PrintedNumber:
         raise PrintedProblem("percent_sign_on_count", text)
     found = _SHAPE.fullmatch(without_percent)
     if not found or not any(character.isdigit() for character in found["body"]):
-        raise PrintedProblem("not_a_number", text)
+        several = _SEVERAL.fullmatch(bare) and len(_FIGURES.findall(bare)) > 1
+        raise PrintedProblem("several_numbers" if several else "not_a_number", text)
     if found["sign"] and found["sign"] != "+":
         raise PrintedProblem("negative", text)
     body, group, decimals = found["body"], found["group"], found["decimals"]

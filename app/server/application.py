@@ -19,7 +19,7 @@ from app.server.guard import Guard
 from app.settings import Settings
 from app.shelf.store import Shelf
 from app.web.desk import Desk
-from app.web.routes import home, patterns, sheet
+from app.web.routes import home, methods, patterns, sheet
 
 _YEAR = 365 * 24 * 3600
 _NO_TELEMETRY: TelemetryConfig = {
@@ -64,6 +64,7 @@ def create_app(settings: Settings) -> ASGIApp:
     app.add_middleware(GZipMiddleware, minimum_size=1000, compresslevel=5)
     app.include_router(home.router)
     app.include_router(sheet.router)
+    app.include_router(methods.router)
     app.include_router(api.router)
     if settings.patterns:
         app.include_router(patterns.router)
@@ -83,10 +84,10 @@ def _document(app: FastAPI) -> None:
     def schema() -> dict[str, object]:
         made = get_openapi(title=app.title, version=app.version, description=app.description, routes=app.routes)
         shapes = made["components"]["schemas"]
-        for model in api.DOCUMENTED_ONLY:
-            document = model.model_json_schema(ref_template="#/components/schemas/{model}")
+        for endpoint in api.ENDPOINTS:
+            document = endpoint.asks.model_json_schema(ref_template="#/components/schemas/{model}")
             shapes.update(document.pop("$defs", {}))
-            shapes[model.__name__] = document
+            shapes[endpoint.asks.__name__] = document
         return made
 
     app.openapi = schema  # type: ignore[method-assign]

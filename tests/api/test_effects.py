@@ -12,10 +12,10 @@ from hypothesis import strategies as st
 from starlette.testclient import TestClient
 
 from app import __version__
-from app.api.routes import DOCUMENTED_ONLY
+from app.api.routes import ENDPOINTS
 from app.errors import InputProblems
-from app.intake.effects import effects_input
-from app.measures.registry import EFFECT_METHODS, RISK_METHODS, TESTS
+from app.intake.counts import effects_input
+from app.measures.registry import RISK_METHODS, TESTS, effect_methods, quick_tests
 from tests.checks_reader import rows
 
 EXAMPLE = {"intervention": {"events": 46, "total": 418}, "comparator": {"events": 67, "total": 409}}
@@ -57,9 +57,32 @@ def test_every_registered_method_is_in_every_answer(client: TestClient) -> None:
         for arm in ("intervention", "comparator"):
             assert [i["method"] for i in answer["risks"][arm]["intervals"]] == [m.key for m in RISK_METHODS]
         for measure in ("risk_difference", "risk_ratio", "odds_ratio"):
-            keys = [m.key for m in EFFECT_METHODS if m.measure == measure]
+            keys = [m.key for m in effect_methods(measure)]
             assert [i["method"] for i in answer["effects"][measure]["intervals"]] == keys
-        assert [p["test"] for p in answer["p_values"]] == [t.key for t in TESTS]
+        assert [p["test"] for p in answer["p_values"]] == [t.key for t in quick_tests()]
+    asked = post(client, {**EXAMPLE, "exact_unconditional": True})["p_values"]
+    assert [p["test"] for p in asked] == [t.key for t in TESTS if t.offered]
+    assert {p["test"]: p["p"] for p in asked}["barnard_pooled_z"] == pytest.approx(0.02529, abs=5e-6)
+
+
+def test_methods_with_an_estimate_of_their_own_carry_it(client: TestClient) -> None:
+    intervals = {i["method"]: i for i in post(client, arms(0, 10, 3, 10))["effects"]["odds_ratio"]["intervals"]}
+    assert intervals["gart_half"]["estimate"] == pytest.approx((0.5 * 7.5) / (10.5 * 3.5))
+    assert intervals["fisher_exact_cond"]["estimate"] == 0
+    assert "estimate" not in intervals["woolf_logit"]
+
+
+def test_case_control_design_refuses_all_that_needs_a_risk(client: TestClient) -> None:
+    answer = post(client, {**EXAMPLE, "design": "case_control"})
+    assert answer["risks"] is None
+    for name in ("risk_difference", "risk_ratio", "relative_risk_reduction", "number_needed_to_treat"):
+        assert answer["effects"][name] is None
+    assert answer["effects"]["odds_ratio"]["estimate"] == pytest.approx(46 * 342 / (372 * 67))
+    assert {refusal["why"] for refusal in answer["refused"]} == {
+        "In a case-control study the number of cases and controls was chosen, so the totals hold no risk; only the odds ratio "
+        "can be had."
+    }
+    assert [refusal["measure"] for refusal in answer["refused"]][:2] == ["risks", "risk_difference"]
 
 
 def test_undefined_is_null_and_infinite_is_a_word(client: TestClient) -> None:
@@ -104,7 +127,7 @@ NEWCOMBE = [
     row
     for row in rows("published")
     if row["source"].startswith("Newcombe 1998")
-    and row["quantity"].split()[0] in {"wilson", "clopper_pearson", "newcombe", "miettinen_nurminen"}
+    and row["quantity"].split()[0] in {m.key for m in (*RISK_METHODS, *effect_methods("risk_difference"))}
 ]
 
 
@@ -127,7 +150,10 @@ def test_published_table(client: TestClient, row: dict[str, str]) -> None:
 
 REFUSED: list[tuple[Any, list[tuple[str, str, str]]]] = [
     ([], [("", "A JSON object is needed.", "not_an_object")]),
-    ({}, [("intervention", "This arm is missing.", "missing_field"), ("comparator", "This arm is missing.", "missing_field")]),
+    (
+        {},
+        [("intervention", "This part is missing.", "missing_field"), ("comparator", "This part is missing.", "missing_field")],
+    ),
     ({**EXAMPLE, "alpha": 0.05}, [("alpha", "This field is not known here.", "unknown_field")]),
     (
         {"intervention": {"events": 50, "total": 40, "x": 1}, "comparator": {"events": True, "total": 0}},
@@ -155,9 +181,9 @@ REFUSED: list[tuple[Any, list[tuple[str, str, str]]]] = [
     (arms(1, 10**12, 1, 10), [("intervention.total", "More people than this program counts in an arm.", "count_too_large")]),
     (
         {**EXAMPLE, "confidence_level": 95},
-        [("confidence_level", "A confidence level from 0.5 to 0.9999 is needed.", "confidence_level_out_of_range")],
+        [("confidence_level", "A number from 0.5 to 0.9999 is needed.", "out_of_range")],
     ),
-    ({**EXAMPLE, "event_is": "bad"}, [("event_is", "Say whether the event is unwanted or wanted.", "unknown_choice")]),
+    ({**EXAMPLE, "event_is": "bad"}, [("event_is", "This is none of the choices.", "unknown_choice")]),
 ]
 
 
@@ -206,8 +232,9 @@ def test_openapi_documents_what_is_asked_and_refused(client: TestClient) -> None
         "$ref": "#/components/schemas/Problems"
     }
     assert "HTTPValidationError" not in json.dumps(document["paths"])
-    assert [model.__name__ for model in DOCUMENTED_ONLY] == ["EffectsRequest"]
-    assert set(document["paths"]) == {"/api/v1/effects"}
+    assert set(document["paths"]) == {f"/api/v1{endpoint.path}" for endpoint in ENDPOINTS}
+    for endpoint in ENDPOINTS:
+        assert {endpoint.asks.__name__, endpoint.answers.__name__} <= set(document["components"]["schemas"])
 
 
 JSON = st.recursive(

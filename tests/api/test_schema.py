@@ -18,7 +18,7 @@ def test_api_answers_as_documented(live: LiveServer) -> None:
     assert operations
     for operation in operations:
 
-        @settings(max_examples=120, suppress_health_check=list(HealthCheck))
+        @settings(max_examples=60, suppress_health_check=list(HealthCheck))
         @given(case=operation.as_strategy())
         def answers(case: Any) -> None:
             # A schema cannot say that events are at most their total, so valid data may be refused.

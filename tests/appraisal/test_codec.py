@@ -11,7 +11,7 @@ from hypothesis import strategies as st
 
 from app.appraisal.codec import VERSION, decode, encode
 from app.appraisal.examples import LEG_ULCER
-from app.appraisal.sheet import CONFIDENCE_LEVELS, EVENT_IS, FOLLOW_UP, Sheet, TypedArm, TypedOutcome
+from app.appraisal.sheet import CONFIDENCE_LEVELS, DESIGNS, EVENT_IS, FOLLOW_UP, Sheet, TypedArm, TypedOutcome
 
 SAMPLES = Path(__file__).parents[1] / "samples"
 TEXT = st.text(st.characters(exclude_categories=["Cs"]), max_size=30)
@@ -24,6 +24,7 @@ SHEET = st.builds(
     st.tuples(TEXT, TEXT),
     st.lists(OUTCOME, min_size=1, max_size=3).map(tuple),
     st.sampled_from(CONFIDENCE_LEVELS),
+    st.sampled_from(DESIGNS),
     st.booleans(),
 )
 

@@ -10,7 +10,7 @@ from tests.claims_maker import arm_claims
 
 def one(first: dict[str, str], second: dict[str, str], **settings: object) -> OutcomeAppraisal:
     claims = arm_claims("intervention", **first) + arm_claims("comparator", **second)
-    given = OutcomeInput(claims, **settings)  # type: ignore[arg-type]
+    given = OutcomeInput(claims, **{"event_is": "unwanted", **settings})  # type: ignore[arg-type]
     return appraise(AppraisalInput((given,))).outcomes[0]
 
 

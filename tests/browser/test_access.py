@@ -61,6 +61,8 @@ def test_keyboard_alone(page: Page, live: LiveServer) -> None:
     expect(page.locator(TOTAL[1])).to_be_focused()  # new panels do not take the focus away
     page.locator("#outcome-0-event_is").focus()
     page.keyboard.press("ArrowDown")
+    expect(page.locator("#measure-number_needed_to_treat .value")).to_have_text("19 to benefit")
+    page.keyboard.press("ArrowDown")
     expect(page.locator("#measure-number_needed_to_treat .value")).to_have_text("18 to harm")
     page.locator("#measure-risk_ratio summary").focus()
     page.keyboard.press("Enter")
@@ -84,8 +86,9 @@ def test_axe_finds_nothing(page: Page, live: LiveServer, width: int) -> None:
     assert not violations(page)
     type_into(page, (EVENTS[0], "abc"), (PERCENTAGE[1], "11.3"), (TOTAL[1], "40"))
     assert not violations(page)
-    page.goto(f"{live.url}/patterns")
-    assert not violations(page)
+    for address in ("/patterns", "/methods"):
+        page.goto(f"{live.url}{address}")
+        assert not violations(page)
     page.expected_faults = ("404",)  # type: ignore[attr-defined]
     page.goto(f"{live.url}/sheet/ffffffffffff")
     assert not violations(page)

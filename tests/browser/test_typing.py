@@ -25,9 +25,9 @@ def test_typing_counts_changes_every_panel(page: Page, live: LiveServer) -> None
     panels = {
         ".fourfold tbody tr:nth-child(1) td:nth-child(2)": ("46", "30"),
         f"{RISK_DIFFERENCE} .value": ("5.4 points lower", "9.2 points lower"),
-        f"{NEEDED} .value": ("19 to benefit", "11 to benefit"),
+        f"{NEEDED} .value": ("19 for one fewer", "11 for one fewer"),
         "#measure-risk_ratio .value": ("0.67", "0.438"),
-        "#measure-relative_risk_reduction .value": ("33% lower", "56% lower"),
+        "#measure-relative_risk_reduction .value": ("33%", "56%"),
         "#measure-odds_ratio .value": ("0.63", "0.395"),
         ".array.intervention li:nth-child(1) b": ("11", "7"),
     }
@@ -53,7 +53,9 @@ def test_percentages_with_one_fitting_table(page: Page, live: LiveServer) -> Non
 def test_percentages_with_several_fitting_tables(page: Page, live: LiveServer) -> None:
     page.goto(live.url)
     type_into(page, (PERCENTAGE[0], "11"), (TOTAL[0], "418"), (PERCENTAGE[1], "16"), (TOTAL[1], "409"))
-    expect(page.locator(".summary")).to_have_text("20 tables fit. Each figure below is the range over all of them.")
+    expect(page.locator(".summary")).to_have_text(
+        "20 tables fit. Estimates show the range over all of them, intervals the widest over all."
+    )
     expect(page.locator(".fourfold tbody tr:nth-child(1) td:nth-child(2)")).to_have_text("44 to 48")
     expect(page.locator("#measure-risk_ratio .value")).to_have_text("0.64 to 0.73")
     expect(page.locator("#note-more_if_truncated").first).to_be_visible()
@@ -78,7 +80,7 @@ def test_other_pairs_of_numbers(page: Page, live: LiveServer) -> None:
 def test_interval_through_infinity(page: Page, live: LiveServer) -> None:
     page.goto(live.url)
     type_counts(page, "30", "210", "24", "205")
-    expect(page.locator(f"{NEEDED} .interval")).to_contain_text("25 to benefit … ∞ … 10 to harm")
+    expect(page.locator(f"{NEEDED} .interval")).to_contain_text("25 for one fewer … ∞ … 10 for one more")
     expect(page.locator(f"{RISK_DIFFERENCE} .interval")).to_contain_text("4.0 lower to 9.2 higher")
 
 

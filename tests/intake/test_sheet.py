@@ -83,6 +83,16 @@ CASES: list[tuple[dict[str, str], list[tuple[str, str, str]]]] = [
         {"events": "<script>alert(1)</script>", "total": "40"},
         [(EVENTS, "“<script>alert(1)</script” is not a number.", "Type digits, such as 46.")],
     ),
+    (
+        {"events": "46/418", "total": "418"},
+        [
+            (
+                EVENTS,
+                "“46/418” holds more than one number.",
+                "Type one number here, such as 46, and the others in their own boxes.",
+            )
+        ],
+    ),
     ({"events": "NaN", "total": "40"}, [(EVENTS, "“NaN” is not a number.", "Type digits, such as 46.")]),
     ({"events": "\x00\u202e", "total": "40"}, [(EVENTS, "“��” is not a number.", "Type digits, such as 46.")]),
 ]
@@ -114,6 +124,26 @@ NEEDS: list[tuple[dict[str, str], tuple[str, str, str]]] = [
     ({"non_events": "4"}, (TOTAL, "One more number is needed.", "Type how many were analysed, or the percentage.")),
     ({"total": "4"}, (EVENTS, "One more number is needed.", "Type how many had the event, or the percentage.")),
     ({"percentage": "4"}, (TOTAL, "One more number is needed.", "Type how many were analysed, or how many had the event.")),
+    (
+        {"events": "46", "total": "418", "percentage": "14.0"},
+        (PERCENTAGE, "46 of 418 is 11.00%, not 14.0.", "Check the three numbers; the figures below follow the counts."),
+    ),
+    (
+        {"total": "37", "percentage": "11.0"},
+        (
+            PERCENTAGE,
+            "No whole number of people gives this percentage.",
+            "Check the total and the percentage; the note says which counts and totals come near.",
+        ),
+    ),
+    (
+        {"total": "418", "percentage": "0.11"},
+        (
+            PERCENTAGE,
+            "No whole number of people gives this percentage.",
+            "If 0.11 is a proportion, type it as a percentage, 11.00.",
+        ),
+    ),
     ({"events": "0", "percentage": "0"}, (TOTAL, "These two allow almost any total.", "Type how many were analysed.")),
 ]
 
@@ -147,7 +177,7 @@ def test_a_form_changes_only_what_it_posts() -> None:
 
 def test_a_choice_that_is_none_leaves_the_old_one() -> None:
     after = sheet_from_form({"confidence_level": "42", "outcome-0-event_is": "<b>"}, Sheet())
-    assert (after.confidence_level, after.outcomes[0].event_is) == ("95", "unwanted")
+    assert (after.confidence_level, after.outcomes[0].event_is) == ("95", "not_said")
 
 
 @given(

@@ -10,13 +10,15 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from app.measures.exact import fisher_irwin
+from app.measures.exact import log_fisher_irwin
 from app.measures.fourfold import Fourfold
 from app.measures.interval import normal_quantile
 from app.measures.pvalues import n_minus_1_statistic
 from app.measures.registry import EFFECT_METHODS, RISK_METHODS, TESTS, EffectMethod, effect_methods
 
-BOTH = pytest.mark.parametrize("method", EFFECT_METHODS, ids=lambda m: f"{m.measure}-{m.key}")
+OFFERED = [m for m in EFFECT_METHODS if m.offered]
+ADDED = {"adj_log_half_half"}  # half an event added to totals too: not symmetric in events and non-events
+BOTH = pytest.mark.parametrize("method", OFFERED, ids=lambda m: f"{m.measure}-{m.key}")
 
 
 @st.composite
@@ -94,7 +96,7 @@ def test_an_array_is_a_loop(method: EffectMethod, many: list[Fourfold]) -> None:
 
 def test_the_shape_of_the_counts_is_kept() -> None:
     table = Fourfold(np.arange(6).reshape(2, 3), 20, 4, 20)
-    for method in EFFECT_METHODS:
+    for method in OFFERED:
         assert method.interval(table, 0.95).low.shape == (2, 3)
     for test in TESTS:
         assert test.p(table).shape == (2, 3)
@@ -120,4 +122,4 @@ def test_fisher_is_exact(table: Fourfold) -> None:
     m = a + c
     weights = {x: math.comb(n1, x) * math.comb(n2, m - x) for x in range(max(0, m - n2), min(n1, m) + 1)}
     expected = Fraction(sum(w for w in weights.values() if w <= weights[a]), sum(weights.values()))
-    assert math.isclose(float(fisher_irwin(table)), float(expected), rel_tol=1e-12)
+    assert math.isclose(math.exp(float(log_fisher_irwin(table))), float(expected), rel_tol=1e-12)
