@@ -14,7 +14,7 @@ from app.appraisal.rates import RateResult, Rates
 from app.appraisal.run import exact_difference
 from app.intake.counts import ClusterInput, EffectsInput, PairedInput, ProbabilityInput, RatesInput, StrataInput
 from app.intake.estimates import BackInput, EValueInput, HazardInput, InteractionInput, TranslateInput
-from app.measures import bayes, cluster, evalue, hazard, paired, ratio, translate
+from app.measures import bayes, cluster, evalue, hazard, needed, paired, ratio, translate
 from app.measures.fourfold import Floats
 from app.measures.interval import Interval, single
 from app.measures.needed import Segment, direction_of, needed_segments, rounded_needed
@@ -102,8 +102,8 @@ def effects_answer(effects: Effects, given: EffectsInput) -> Json:
     """The answer of /effects for one table; measures that the design forbids are null, and say why."""
     measures = effects.measures
     unwanted = given.event_is == "unwanted"
-    needed = _needed(exact_difference(effects.table, 0), unwanted)
-    needed["intervals"] = [
+    with_intervals = _needed(exact_difference(effects.table, 0), unwanted)
+    with_intervals["intervals"] = [
         {"method": method.key, "segments": _segments(needed_segments(interval, unwanted)), "default": method.default}
         for method, interval in measures["risk_difference"].intervals
     ]
@@ -113,7 +113,7 @@ def effects_answer(effects: Effects, given: EffectsInput) -> Json:
         "risk_ratio": _measure(measures["risk_ratio"]),
         "odds_ratio": _measure(measures["odds_ratio"]),
         "relative_risk_reduction": _reduction(measures["risk_ratio"]),
-        "number_needed_to_treat": needed,
+        "number_needed_to_treat": with_intervals,
     }
     forbidden = ("risks", *(name for name in found if name != "odds_ratio")) if given.design == "case_control" else ()
     return versioned(
@@ -147,8 +147,29 @@ def rates_answer(rates: Rates, given: RatesInput) -> Json:
             "rates": arms(given.per),
             "rate_difference": _rate(rates.measures["rate_difference"], given.per),
         },
+        mean_follow_up=dict(zip(("intervention", "comparator"), _mean_follow_up(given), strict=True)),
+        person_time_needed=_person_time_needed(rates),
         p_values=[{"test": test.key, "p": number(p), "default": test.default} for test, p in rates.tests],
     )
+
+
+def _mean_follow_up(given: RatesInput) -> list[float | None]:
+    """Person-time over people, where the people are given."""
+    times = float(given.data.time_intervention), float(given.data.time_comparator)
+    return [time / total if total else None for time, total in zip(times, given.totals, strict=True)]
+
+
+def _person_time_needed(rates: Rates) -> Json:
+    """Person-time to one event fewer or more, its interval the inverted default one of the difference."""
+    result = rates.measures["rate_difference"]
+    _, interval = next(pair for pair in result.intervals if pair[0].default)
+    words = {"benefit": "fewer", "harm": "more"}
+    segments = _segments(needed_segments(interval, True))
+    return {
+        "estimate": number(needed.number_needed(result.estimate)),
+        "segments": [{**segment, "direction": words[segment["direction"]]} for segment in segments],
+        "assumes": "Person-time for one event fewer or more at a constant rate; not a number of people.",
+    }
 
 
 def strata_answer(given: StrataInput) -> Json:
@@ -174,12 +195,12 @@ def hazard_answer(given: HazardInput) -> Json:
     risks = [float(hazard.risk_with(hr, given.comparator_risk)) for hr in (estimate, low, high)]
     differences = [float(hazard.risk_difference_at(hr, given.comparator_risk)) for hr in (estimate, low, high)]
     unwanted = given.event_is == "unwanted"
-    needed = _needed(Fraction(differences[0]), unwanted)
+    estimate_only = _needed(Fraction(differences[0]), unwanted)
     interval = single(*differences[1:])
     return versioned(
         risk_with=limits(*risks),
         risk_difference=limits(*differences),
-        number_needed_to_treat={**needed, "segments": _segments(needed_segments(interval, unwanted))},
+        number_needed_to_treat={**estimate_only, "segments": _segments(needed_segments(interval, unwanted))},
         assumes="The ratio of the hazards is the same at all times up to this one.",
     )
 
@@ -188,10 +209,12 @@ def back_answer(given: BackInput) -> Json:
     """The answer of /back-calculation."""
     if given.limits is not None:
         low, high = given.limits
-        found = back.p_from_interval(given.estimate, low, high, given.scale, given.confidence_level)
+        found = back.p_from_interval(given.estimate, low, high, given.scale, given.confidence_level, sides=given.sides)
         interval = single(low, high)
     else:
-        interval, found = back.interval_from_p(given.estimate, given.p or 1.0, given.scale, given.confidence_level)
+        interval, found = back.interval_from_p(
+            given.estimate, given.p or 1.0, given.scale, given.confidence_level, sides=given.sides
+        )
     return versioned(
         z=number(found.z),
         standard_error=number(found.standard_error),

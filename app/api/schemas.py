@@ -97,6 +97,7 @@ class ArmTime(Shape):
 
     events: Events
     person_time: Annotated[float, Field(ge=1e-3, le=1e9)]
+    total: Total | None = None
 
 
 class RatesRequest(Shape):
@@ -123,6 +124,29 @@ class Scaled(Shape):
     rate_difference: MeasureAnswer
 
 
+class RateSegment(Shape):
+    """One side of its interval: towards fewer events or towards more."""
+
+    direction: Literal["fewer", "more"]
+    low: Number
+    high: Number
+
+
+class MeanFollowUp(Shape):
+    """Person-time over people; null where the people are not given."""
+
+    intervention: Number
+    comparator: Number
+
+
+class PersonTimeNeeded(Shape):
+    """Person-time to one event fewer or more. It is no number of people needed to treat."""
+
+    estimate: Number
+    segments: list[RateSegment]
+    assumes: str
+
+
 class RatePAnswer(Shape):
     """P of no difference in rates by one test."""
 
@@ -138,6 +162,8 @@ class RatesAnswer(Shape):
     rate_ratio: MeasureAnswer
     rate_difference: MeasureAnswer
     scaled: Scaled
+    mean_follow_up: MeanFollowUp
+    person_time_needed: PersonTimeNeeded
     p_values: list[RatePAnswer]
     version: str
 
@@ -218,6 +244,7 @@ class BackRequest(Shape):
     high: float | None = None
     p: Annotated[float, Field(ge=1e-300, le=1)] | None = None
     confidence_level: Level = 0.95
+    sides: Literal[1, 2] = 2
 
 
 class BackAnswer(Shape):

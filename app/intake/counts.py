@@ -30,9 +30,10 @@ class EffectsInput:
 
 @dataclass(frozen=True, slots=True)
 class RatesInput:
-    """Events and person-time of both arms, the level, and the person-time of a scaled copy."""
+    """Events, person-time and (where given) people of both arms, the level, and the person-time of a scaled copy."""
 
     data: PersonTime
+    totals: tuple[int | None, int | None]
     confidence_level: float
     per: float
 
@@ -121,16 +122,19 @@ def rates_input(given: Any) -> RatesInput:
     """
     body = Body(given, (*_ARMS, "confidence_level", "per"))
     cells: list[float] = []
+    totals: list[int | None] = []
     for name in _ARMS:
-        arm = body.inner(name, ("events", "person_time"), '{"events": 7, "person_time": 4412.0}')
-        events, time = (
-            (arm.whole("events"), arm.number("person_time", _SHORTEST_TIME, _LONGEST_TIME)) if body.has(name) else (0, 1.0)
-        )
+        arm = body.inner(name, ("events", "person_time", "total"), '{"events": 7, "person_time": 4412.0}')
+        given_here = body.has(name)
+        events = arm.whole("events") if given_here else 0
+        time = arm.number("person_time", _SHORTEST_TIME, _LONGEST_TIME) if given_here else 1.0
+        totals.append(arm.whole("total", 1) if given_here and arm.has("total") else None)
         cells += [events or 0, time or 1.0]
     level = body.confidence_level()
     per = body.number("per", _SHORTEST_TIME, _LONGEST_TIME, default=1.0) or 1.0
     body.finish()
-    return RatesInput(PersonTime(int(cells[0]), cells[1], int(cells[2]), cells[3]), level, per)
+    data = PersonTime(int(cells[0]), cells[1], int(cells[2]), cells[3])
+    return RatesInput(data, (totals[0], totals[1]), level, per)
 
 
 def strata_input(given: Any) -> StrataInput:

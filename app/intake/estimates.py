@@ -40,6 +40,7 @@ class BackInput:
     limits: tuple[float, float] | None
     p: float | None
     confidence_level: float
+    sides: int
 
 
 @dataclass(frozen=True, slots=True)
@@ -122,9 +123,10 @@ def back_input(given: Any) -> BackInput:
     InputProblems
         Everything that is wrong with it.
     """
-    body = Body(given, ("scale", *_ESTIMATE, "p", "confidence_level"))
+    body = Body(given, ("scale", *_ESTIMATE, "p", "confidence_level", "sides"))
     scale = body.choice("scale", _SCALES)
     level = body.confidence_level()
+    sides = int(body.number("sides", 1, 2, default=2) or 2)
     if body.has("p"):
         estimate = body.number("estimate", _SMALLEST if scale == "ratio" else -_LARGEST, _LARGEST)
         p = body.number("p", _SMALLEST_P, 1.0)
@@ -132,10 +134,10 @@ def back_input(given: Any) -> BackInput:
             if body.has(field):
                 body.add(field, "Limits and p are both given.", "Give the limits, or p.", "unknown_field")
         body.finish()
-        return BackInput(scale, estimate or 0.0, None, p, level)
+        return BackInput(scale, estimate or 0.0, None, p, level, sides)
     estimate, low, high = _estimate_in(body, ratio=scale == "ratio")
     body.finish()
-    return BackInput(scale, estimate, (low, high), None, level)
+    return BackInput(scale, estimate, (low, high), None, level, sides)
 
 
 def translate_input(given: Any) -> TranslateInput:

@@ -19,7 +19,7 @@ ALTMAN_BLAND_MULTIPLIERS: Mapping[float, float] = {0.90: 1.65, 0.95: 1.96, 0.99:
 
 
 class BackCalculated(NamedTuple):
-    """Size of z, standard error on the scale of calculation, and two-sided p."""
+    """Size of z, standard error on the scale of calculation, and p."""
 
     z: Floats
     standard_error: Floats
@@ -52,9 +52,9 @@ def standard_error(low: ArrayLike, high: ArrayLike, scale: Scale, confidence_lev
 
 
 def p_from_interval(
-    estimate: ArrayLike, low: ArrayLike, high: ArrayLike, scale: Scale, confidence_level: float = 0.95
+    estimate: ArrayLike, low: ArrayLike, high: ArrayLike, scale: Scale, confidence_level: float = 0.95, *, sides: int = 2
 ) -> BackCalculated:
-    """Two-sided p behind an estimate and its interval, by exact normal quantiles.
+    """P behind an estimate and its interval, by exact normal quantiles; with `sides` 1 that of the side seen.
 
     References
     ----------
@@ -63,13 +63,13 @@ def p_from_interval(
     error = standard_error(low, high, scale, confidence_level)
     with np.errstate(divide="ignore", invalid="ignore"):
         z = np.abs(_on_scale(estimate, scale)) / error
-    return BackCalculated(np.asarray(z), error, np.asarray(2.0 * special.ndtr(-z)))
+    return BackCalculated(np.asarray(z), error, np.asarray(sides * special.ndtr(-z)))
 
 
 def interval_from_p(
-    estimate: ArrayLike, p: ArrayLike, scale: Scale, confidence_level: float = 0.95
+    estimate: ArrayLike, p: ArrayLike, scale: Scale, confidence_level: float = 0.95, *, sides: int = 2
 ) -> tuple[Interval, BackCalculated]:
-    """Interval behind an estimate and its two-sided p, by exact normal quantiles.
+    """Interval behind an estimate and its p, by exact normal quantiles; with `sides` 1 the p is that of one side.
 
     Edge cases
     ----------
@@ -80,7 +80,7 @@ def interval_from_p(
     altman_bland_2011_interval.
     """
     p = np.asarray(p, dtype=np.float64)
-    z = -special.ndtri(p / 2.0)
+    z = -special.ndtri(p / sides)
     return _interval_about(estimate, z, p, scale, normal_quantile(confidence_level))
 
 

@@ -44,6 +44,7 @@ def newcombe(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     return _hybrid(table, wilson, confidence_level)
 
 
+@blockwise
 def wald(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Plain interval RD -+ z sqrt(p1 q1/n1 + p2 q2/n2): short of its level below about 200 people an arm.
 
@@ -59,6 +60,7 @@ def wald(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     return _about(risk_difference(table), half)
 
 
+@blockwise
 def wald_cc(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """The plain interval made wider by (1/n1 + 1/n2)/2 on each side. For checking print.
 
@@ -71,6 +73,7 @@ def wald_cc(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     return _about(risk_difference(table), half)
 
 
+@blockwise
 def wald_pooled(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """The plain interval with the standard error of the test of no difference. For checking print.
 
@@ -86,6 +89,7 @@ def wald_pooled(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     return _about(risk_difference(table), half)
 
 
+@blockwise
 def agresti_caffo(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Plain interval after adding one event and one non-event to each arm; the estimate stays raw.
 

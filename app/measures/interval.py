@@ -41,6 +41,18 @@ def blockwise(method: Callable[[Fourfold, float], Interval]) -> Callable[[Fourfo
     return in_blocks
 
 
+def blockwise_p(log_p: Callable[[Fourfold], Floats]) -> Callable[[Fourfold], Floats]:
+    """The same test, computed on such blocks."""
+
+    @wraps(log_p)
+    def in_blocks(table: Fourfold) -> Floats:
+        if table.events_intervention.size <= BLOCK:
+            return log_p(table)
+        return np.concatenate([log_p(block) for block in table.blocks(BLOCK)]).reshape(table.shape)
+
+    return in_blocks
+
+
 def normal_quantile(confidence_level: float) -> float:
     """Two-sided standard normal quantile of a confidence level (0.95 gives 1.959963984540054).
 

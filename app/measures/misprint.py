@@ -6,7 +6,7 @@ import numpy as np
 
 from app.measures.difference import risk_difference
 from app.measures.fourfold import Floats, Fourfold
-from app.measures.interval import Interval, normal_quantile
+from app.measures.interval import Interval, blockwise, normal_quantile
 
 _HALVINGS = 60
 
@@ -29,6 +29,7 @@ def _statistic(difference: Floats, table: tuple[Floats, Floats, Floats, Floats])
         return np.asarray((a / n1 - c / n2 - difference) ** 2 / variance)
 
 
+@blockwise
 def score_known_fault(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Score interval of the risk difference whose restricted fit has one wrong term.
 

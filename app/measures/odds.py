@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from app.measures.fourfold import Flags, Floats, Fourfold
-from app.measures.interval import Interval, normal_quantile
+from app.measures.interval import Interval, blockwise, normal_quantile
 from app.measures.ratio import log_interval, log_ratio
 
 
@@ -16,6 +16,7 @@ def odds_ratio(table: Fourfold) -> Floats:
         return np.asarray((a * (n2 - c)) / ((n1 - a) * c))
 
 
+@blockwise
 def woolf_logit(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Logit interval for the odds ratio: exp(ln OR -+ z sqrt(1/a + 1/b + 1/c + 1/d)).
 
@@ -54,6 +55,7 @@ def _half_added(table: Fourfold) -> tuple[Floats, Floats]:
     return np.log(a) - np.log(b) - np.log(c) + np.log(d), np.sqrt(1.0 / a + 1.0 / b + 1.0 / c + 1.0 / d)
 
 
+@blockwise
 def gart_half(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Logit interval with 1/2 added to every cell, always; its estimate is the adjusted one.
 
@@ -70,6 +72,7 @@ def gart_half_estimate(table: Fourfold) -> Floats:
     return np.asarray(np.exp(_half_added(table)[0]))
 
 
+@blockwise
 def half_when_empty(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """The logit interval, with 1/2 added to every cell only where one is empty. For checking print.
 
@@ -82,6 +85,7 @@ def half_when_empty(table: Fourfold, confidence_level: float = 0.95) -> Interval
     return Interval(np.where(empty, added.low, plain.low), np.where(empty, added.high, plain.high))
 
 
+@blockwise
 def inv_sinh(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Inverse hyperbolic sine interval: exp(ln OR -+ 2 asinh(z SE/2)).
 

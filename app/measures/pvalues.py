@@ -6,6 +6,7 @@ import numpy as np
 from scipy import special
 
 from app.measures.fourfold import Floats, Fourfold
+from app.measures.interval import blockwise_p
 from app.measures.likelihood import deviance
 
 
@@ -34,6 +35,7 @@ def pearson_statistic(table: Fourfold) -> Floats:
         return np.asarray(determinant / (n1 * n2) * determinant * total / (events * (total - events)))
 
 
+@blockwise_p
 def log_pearson(table: Fourfold) -> Floats:
     """Natural log of p by Pearson's chi-squared without correction; nan where nobody or everybody has the event.
 
@@ -55,6 +57,7 @@ def n_minus_1_statistic(table: Fourfold) -> Floats:
     return np.asarray(pearson_statistic(table) * (1.0 - 1.0 / (n1 + n2)))
 
 
+@blockwise_p
 def log_n_minus_1(table: Fourfold) -> Floats:
     """Natural log of p by the N-1 chi-squared, the test that the Miettinen-Nurminen intervals invert. The default.
 
@@ -84,6 +87,7 @@ def yates_statistic(table: Fourfold) -> Floats:
         return np.asarray(gap / (n1 * n2) * gap * total / (events * (total - events)))
 
 
+@blockwise_p
 def log_yates(table: Fourfold) -> Floats:
     """Natural log of p by chi-squared with Yates' continuity correction; nan where nobody or everybody has the event.
 
@@ -117,6 +121,7 @@ def likelihood_ratio_statistic(table: Fourfold) -> Floats:
     return np.asarray(np.where((m > 0.0) & (rest > 0.0), statistic, np.nan))
 
 
+@blockwise_p
 def log_likelihood_ratio(table: Fourfold) -> Floats:
     """Natural log of p by the likelihood ratio statistic; nan where nobody or everybody has the event.
 
@@ -132,6 +137,7 @@ def _log_normal_p(z: Floats) -> Floats:
     return np.asarray(np.log(2.0) + special.log_ndtr(-np.abs(z)))
 
 
+@blockwise_p
 def log_wald_z_difference(table: Fourfold) -> Floats:
     """Natural log of p by RD over its plain standard error. For checking print.
 
@@ -145,6 +151,7 @@ def log_wald_z_difference(table: Fourfold) -> Floats:
         return _log_normal_p(table.determinant / (n1 * n2) / error)
 
 
+@blockwise_p
 def log_wald_z_ratio(table: Fourfold) -> Floats:
     """Natural log of p by ln RR over its log standard error. For checking print.
 
@@ -158,6 +165,7 @@ def log_wald_z_ratio(table: Fourfold) -> Floats:
     return np.asarray(np.where((a > 0) & (c > 0), _log_normal_p(z), np.nan))
 
 
+@blockwise_p
 def log_wald_z_odds(table: Fourfold) -> Floats:
     """Natural log of p by ln OR over its logit standard error. For checking print.
 

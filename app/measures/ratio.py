@@ -36,6 +36,7 @@ def log_interval(log_estimate: Floats, half_width: Floats, defined: Flags) -> In
     return Interval(low, high)
 
 
+@blockwise
 def katz_log(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Log (delta-method) interval for the risk ratio, the one papers print most.
 
@@ -83,6 +84,7 @@ def _log_interval_of(cells: tuple[Floats, Floats, Floats, Floats], confidence_le
     return log_interval(np.log(a / n1) - np.log(c / n2), half, np.ones(a.shape, dtype=np.bool_))
 
 
+@blockwise
 def adj_log_half_half(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Log interval with 1/2 added to events and to totals; its estimate is the adjusted one.
 
@@ -99,6 +101,7 @@ def adj_half_half_estimate(table: Fourfold) -> Floats:
     return a / n1 / (c / n2)
 
 
+@blockwise
 def log_half_all_cells(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Log interval with 1/2 added to all four cells, totals by 1; its estimate is the adjusted one.
 
@@ -115,6 +118,7 @@ def half_all_cells_estimate(table: Fourfold) -> Floats:
     return a / n1 / (c / n2)
 
 
+@blockwise
 def half_when_empty(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """The log interval, with 1/2 added to all four cells only where one is empty. For checking print.
 
@@ -128,6 +132,7 @@ def half_when_empty(table: Fourfold, confidence_level: float = 0.95) -> Interval
     return Interval(np.where(empty, added.low, plain.low), np.where(empty, added.high, plain.high))
 
 
+@blockwise
 def inv_sinh(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Inverse hyperbolic sine interval: the log one drawn in a little, exp(ln RR -+ 2 asinh(z SE/2)).
 
@@ -168,6 +173,7 @@ def mover_r_wilson(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     return Interval(np.where(p1 > 0.0, low, 0.0), high)
 
 
+@blockwise
 def poisson_model(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Log interval with the standard error of counts of a rate, sqrt(1/a + 1/c). For checking print.
 
@@ -181,6 +187,7 @@ def poisson_model(table: Fourfold, confidence_level: float = 0.95) -> Interval:
         return log_interval(center, normal_quantile(confidence_level) * np.sqrt(1.0 / a + 1.0 / c), defined)
 
 
+@blockwise
 def based_on_test(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """RR to the power 1 -+ z/chi, chi of Pearson's test. For checking print: wrong away from no effect.
 
@@ -195,6 +202,7 @@ def based_on_test(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     return log_interval(center, half, defined & np.isfinite(half))
 
 
+@blockwise
 def efficacy_exact_split(table: Fourfold, confidence_level: float = 0.95) -> Interval:
     """Exact interval of the split of events between the arms, as a risk ratio. For checking print.
 

@@ -45,6 +45,28 @@ def test_rates_of_the_design(client: TestClient) -> None:
     assert [p["test"] for p in answer["p_values"]] == [t.key for t in RATE_TESTS]
     assert "number_needed_to_treat" not in answer
     assert "risk" not in str(sorted(answer))
+    assert answer["mean_follow_up"] == {"intervention": None, "comparator": None}
+
+
+def test_rates_show_mean_follow_up_and_person_time_needed(client: TestClient) -> None:
+    body = {
+        "intervention": {"events": 7, "person_time": 4412.0, "total": 2206},
+        "comparator": {"events": 12, "person_time": 4388.0},
+    }
+    answer = post(client, "rates", body)
+    assert answer["mean_follow_up"] == {"intervention": 2.0, "comparator": None}
+    needed = answer["person_time_needed"]
+    assert needed["estimate"] == pytest.approx(1 / (12 / 4388 - 7 / 4412))
+    assert [segment["direction"] for segment in needed["segments"]] == ["fewer", "more"]
+    assert needed["assumes"] == "Person-time for one event fewer or more at a constant rate; not a number of people."
+
+
+def test_one_sided_p_is_half_of_the_two_sided(client: TestClient) -> None:
+    body = {"scale": "ratio", "estimate": 0.78, "low": 0.66, "high": 0.92}
+    two, one = post(client, "back-calculation", body), post(client, "back-calculation", {**body, "sides": 1})
+    assert one["p"] == pytest.approx(two["p"] / 2)
+    back = post(client, "back-calculation", {"scale": "ratio", "estimate": 0.78, "p": one["p"], "sides": 1})
+    assert back["z"] == pytest.approx(two["z"])
 
 
 def test_rates_reproduce_the_check_values(client: TestClient) -> None:
