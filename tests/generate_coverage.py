@@ -59,7 +59,7 @@ def effect_coverage(method: EffectMethod, n: int, grid: Floats = GRID) -> Floats
 
 def _summary(values: Floats) -> dict[str, Any]:
     return {
-        "least": round(float(values.min()), 3),
+        "least": round(float(np.min(values)), 3),
         "mean": round(float(values.mean()), 3),
         "below_93": round(float((values < 0.93).mean()), 3),
     }
@@ -97,7 +97,7 @@ def generate() -> dict[str, Any]:
             rejects = np.nan_to_num(test.p(_table(n)), nan=1.0) <= 0.05
             weights = _binomials(n, LINE)
             values = np.einsum("ij,jk,ik->i", weights, rejects.astype(float), weights)
-            tests[test.key][str(n)] = {"largest": round(float(values.max()), 4), "line": _thousandths(10 * values)}
+            tests[test.key][str(n)] = {"largest": round(float(np.max(values)), 4), "line": _thousandths(10 * values)}
     return {"effects": effects, "risks": risks, "tests": tests}
 
 

@@ -45,7 +45,7 @@ def _empty_cells(fits: Fits, confidence_level: float) -> list[Note]:
     none_first, none_second = (bool(np.all(x == 0)) for x in (table.events_intervention, table.events_comparator))
     if none_first and none_second:
         upper = [
-            float(clopper_pearson(0, total.min(), confidence_level).high)
+            float(clopper_pearson(0, np.min(total), confidence_level).high)
             for total in (table.total_intervention, table.total_comparator)
         ]
         return [Note("no_events_at_all", {"upper": upper, "confidence_level": confidence_level})]

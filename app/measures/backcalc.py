@@ -80,7 +80,7 @@ def interval_from_p(
     altman_bland_2011_interval.
     """
     p = np.asarray(p, dtype=np.float64)
-    z = -special.ndtri(p / sides)
+    z = np.asarray(-special.ndtri(p / sides))
     return _interval_about(estimate, z, p, scale, normal_quantile(confidence_level))
 
 

@@ -60,6 +60,6 @@ def _lower(a: float, b: float, c: float, d: float) -> float:
     points = int((high - low) / min(*(spread / _STEPS for spread in spreads), _WIDEST_STEP)) + 64
     t = np.linspace(low, high, points)
     log_density = special.log_expit(t) * a + special.log_expit(-t) * b
-    density = np.exp(log_density - log_density.max())
+    density = np.exp(log_density - np.max(log_density))
     above = special.betaincc(c, d, special.expit(t))
     return float((density * above).sum() / density.sum())

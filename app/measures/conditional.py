@@ -44,7 +44,7 @@ def _windows(a: Floats, n1: Floats, m: Floats, n2: Floats, z: float) -> Iterator
     while start < order.size:
         stop = min(order.size, start + max(1, int(_CELLS / width[order[min(order.size - 1, start + 2000)]])))
         rows = order[start:stop]
-        cells = first[rows, None] + np.arange(int(width[rows].max()))
+        cells = first[rows, None] + np.arange(int(np.max(width[rows])))
         inside = cells < last[rows, None]
         with np.errstate(divide="ignore", invalid="ignore"):
             step = np.log((n1[rows, None] - cells) * (m[rows, None] - cells)) - np.log(

@@ -48,13 +48,13 @@ def _worst(region: Flags) -> float:
     inner = (values >= np.r_[-1.0, values[:-1]]) & (values >= np.r_[values[1:], -1.0])
     peaks = np.flatnonzero(inner)
     peaks = peaks[np.argsort(values[peaks])[::-1][:_BEST]]
-    best = float(values.max())
+    best = float(np.max(values))
     around, width = angles[peaks], step
     for _ in range(_ZOOMS):
         finer = np.clip(around[:, None] + width * np.linspace(-1.0, 1.0, 9), 0.0, np.pi / 2.0)
         found = _probability(region, finer.ravel()).reshape(finer.shape)
         around, width = finer[np.arange(peaks.size), found.argmax(axis=1)], width / 3.5
-        best = max(best, float(found.max()))
+        best = max(best, float(np.max(found)))
     return min(best, 1.0)
 
 
@@ -65,7 +65,7 @@ def certified_bound(region: Flags, points: int) -> float:
     reach = np.sqrt(region.shape[0] + region.shape[1] - 2.0) * angles[1] / 2.0
     # Between two neighbours the angle of P rises at most by the bound times half of what is left.
     top = np.minimum((at[1:] + at[:-1]) / 2.0 + reach, np.pi / 2.0)
-    return float(np.sin(top.max()) ** 2)
+    return float(np.sin(np.max(top)) ** 2)
 
 
 def _counts(n1: int, n2: int) -> tuple[Floats, Floats]:
@@ -82,15 +82,20 @@ def pooled_z_region(a: int, n1: int, c: int, n2: int) -> Flags:
     return np.asarray(statistic >= statistic[a, c] * (1.0 - _TIE))
 
 
+def _log_choices(n: int) -> Floats:
+    """Ln of n over x for x from 0 to n, less ln n!."""
+    x = np.arange(n + 1.0)
+    return np.asarray(-special.gammaln(x + 1.0) - special.gammaln(n - x + 1.0))
+
+
 def _fisher_p(n1: int, n2: int) -> tuple[Floats, Floats, Floats]:
     """P(X <= x), P(X >= x) and Irwin's two-sided sum of every table of a design."""
     lower, upper, irwin = (np.empty((n1 + 1, n2 + 1)) for _ in range(3))
-    logs1 = -special.gammaln(np.arange(n1 + 1.0) + 1.0) - special.gammaln(n1 - np.arange(n1 + 1.0) + 1.0)
-    logs2 = -special.gammaln(np.arange(n2 + 1.0) + 1.0) - special.gammaln(n2 - np.arange(n2 + 1.0) + 1.0)
+    logs1, logs2 = _log_choices(n1), _log_choices(n2)
     for m in range(n1 + n2 + 1):
         x = np.arange(max(0, m - n2), min(n1, m) + 1)
         log = logs1[x] + logs2[m - x]
-        weight = np.exp(log - log.max())
+        weight = np.exp(log - np.max(log))
         weight /= weight.sum()
         lower[x, m - x] = np.cumsum(weight)
         upper[x, m - x] = np.cumsum(weight[::-1])[::-1]

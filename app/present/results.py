@@ -132,8 +132,7 @@ def results_view(outcome: OutcomeAppraisal, names: Names) -> ResultsView:
     if both is None:
         return ResultsView(tables, (), (), None, None, notes)
     given = outcome.input
-    totals = (both.fits.tables.total_intervention, both.fits.tables.total_comparator)
-    decimals = percent_decimals(int(min(total.min() for total in totals)))
+    decimals = percent_decimals(min(run.total for arm in (both.intervention, both.comparator) for run in arm.fits.runs))
     no_risk = given.design == "case_control"
     return ResultsView(
         tables=tables,

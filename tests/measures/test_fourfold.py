@@ -1,5 +1,7 @@
 from __future__ import annotations
 
+from typing import Any
+
 import numpy as np
 import pytest
 
@@ -25,9 +27,9 @@ def test_error_in_counts(counts: tuple[float, ...], message: str) -> None:
 
 
 @pytest.mark.parametrize("bad", [True, "4", None])
-def test_error_in_kind(bad: object) -> None:
+def test_error_in_kind(bad: Any) -> None:
     with pytest.raises(TypeError, match="^events_intervention must be whole numbers, got "):
-        Fourfold(bad, 10, 1, 10)  # type: ignore[arg-type]
+        Fourfold(bad, 10, 1, 10)
 
 
 def test_counts_broadcast_to_one_shape() -> None:
