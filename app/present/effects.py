@@ -18,6 +18,7 @@ from app.present.numerals import (
     decimals_showing_sides,
     fixed,
     needed,
+    per_1000_decimals,
     percentages,
     ratio_decimals,
     sizes,
@@ -70,8 +71,7 @@ def difference_views(both: BothArms, names: Names, decimals: int, given: Outcome
     def points(values: Sequence[float], words: tuple[str, str] = LOWER_HIGHER) -> str:
         return signed_spread(values, sizes(values, 100.0, shared), words)
 
-    thousandths = [1000 * v for v in (*result.estimate, low, high)]
-    people_decimals = decimals_showing_sides(thousandths, 0 if max(map(abs, thousandths[:2])) >= 5 else 1, (0.0,))
+    people_decimals = per_1000_decimals(result.estimate, (low, high))
 
     def per_1000(values: Sequence[float]) -> str:
         return signed_spread(values, sizes(values, 1000.0, people_decimals), FEWER_MORE)

@@ -83,6 +83,12 @@ def sizes(values: Sequence[float], factor: float, decimals: int) -> list[str]:
     return [fixed(value, finest) for value in scaled]
 
 
+def per_1000_decimals(estimates: Sequence[float], limits: Sequence[float]) -> int:
+    """Decimals of differences per 1000 that stand together: none, or one where the estimate is below 5."""
+    scaled = [1000.0 * value for value in (*estimates, *limits)]
+    return decimals_showing_sides(scaled, 0 if max(abs(1000.0 * value) for value in estimates) >= 5 else 1, (0.0,))
+
+
 def p_value(p: float) -> str:
     """A p value with its sign: three decimals from 0.001 to 0.2, else two; digits gained around 0.05.
 

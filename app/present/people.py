@@ -9,7 +9,7 @@ from markupsafe import Markup
 
 from app.appraisal.model import BothArms, OutcomeInput
 from app.present.figures.icons import icon_array
-from app.present.numerals import fixed, needed, sizes, spread
+from app.present.numerals import fixed, needed, per_1000_decimals, sizes, spread
 from app.present.wording import FEWER_MORE, Names, signed_spread
 
 
@@ -122,9 +122,10 @@ def _array(name: str, key: str, event: int, net: int, more: bool, out_of: int, r
 
 
 def _anything_from(both: BothArms) -> str:
-    interval = both.measures["risk_difference"].default
-    ends: Sequence[float] = (interval.low.low, interval.high.high)
-    return f"anything from {signed_spread(ends, sizes(ends, 1000.0, 0), FEWER_MORE)} in every 1000"
+    result = both.measures["risk_difference"]
+    ends: Sequence[float] = (result.default.low.low, result.default.high.high)
+    decimals = per_1000_decimals(result.estimate, ends)
+    return f"anything from {signed_spread(ends, sizes(ends, 1000.0, decimals), FEWER_MORE)} in every 1000"
 
 
 def _settled(both: BothArms) -> bool:

@@ -17,7 +17,21 @@ from app.present.figures.strip import Marks, strip
 
 def _counts(svg: str) -> dict[str, int]:
     soup = BeautifulSoup(svg, "html.parser")
-    return {str(path["class"][0]): str(path["d"]).count("M") for path in soup.select("path")}
+    return {str(path["class"][0]): len(_places(str(path["d"]))) for path in soup.select("path")}
+
+
+def _places(d: str) -> list[tuple[float, float]]:
+    """(y, x) of the middle of each person, followed along the path: a head begins at the middle, a body ends it."""
+    places = []
+    x = y = 0.0
+    for kind, dx, dy in re.findall(r"([Mm])(-?[\d.]+)[ ]?(-?[\d.]+)", d):
+        if kind == "M":
+            x, y = float(dx), float(dy)
+        else:
+            x, y = x + float(dx), y + float(dy)
+        if (dx, dy) == ("0", "-7.4"):  # to the top of a head
+            places.append((round(y + 7.4, 3), round(x, 3)))
+    return places
 
 
 @given(st.data(), st.sampled_from([100, 1000]), st.booleans())
@@ -28,7 +42,8 @@ def test_everybody_is_drawn_once_in_reading_order(data: st.DataObject, out_of: i
     counts = _counts(svg)
     wanted = {"with-event": event, "net-more" if more else "net-fewer": net, "no-event": out_of - event - net}
     assert counts == {name: count for name, count in wanted.items() if count}
-    places = [(float(y), float(x)) for x, y in re.findall(r"M([\d.]+) ([\d.]+)m", svg)]
+    paths = BeautifulSoup(svg, "html.parser").select("path")
+    places = [place for path in paths for place in _places(str(path["d"]))]
     assert len(places) == len(set(places)) == out_of
     assert places == sorted(places)
 

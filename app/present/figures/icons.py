@@ -10,6 +10,7 @@ from markupsafe import Markup
 _HEAD = "m0-7.4a2.2 2.2 0 1 1 0 4.4a2.2 2.2 0 1 1 0-4.4z"
 _BODY = "m-2.6 5.2h5.2a1.2 1.2 0 0 1 1.2 1.2v4h-1.6v4.4h-4.4v-4.4h-1.6v-4a1.2 1.2 0 0 1 1.2-1.2z"
 _PERSON = _HEAD + _BODY
+_END = (-2.6, -2.2)  # from the middle of the cell to where the body began
 
 
 @dataclass(frozen=True, slots=True)
@@ -29,13 +30,21 @@ LAYOUTS = {
 }
 
 
+def _center(index: int, layout: Layout) -> tuple[float, float]:
+    row, column = divmod(index, layout.per_row)
+    x = (column + 0.5) * layout.width + column // layout.group * layout.gap
+    y = (row + 0.5) * layout.height + row // layout.group * layout.gap
+    return x, y
+
+
 def _path(first: int, count: int, layout: Layout) -> str:
-    moves = []
-    for index in range(first, first + count):
-        row, column = divmod(index, layout.per_row)
-        x = (column + 0.5) * layout.width + column // layout.group * layout.gap
-        y = (row + 0.5) * layout.height + row // layout.group * layout.gap
-        moves.append(f"M{x:g} {y:g}{_PERSON}")
+    """People one after the other. Each move is relative, so that a row is one text repeated, which packs well."""
+    x, y = _center(first, layout)
+    moves = [f"M{x:g} {y:g}{_PERSON}"]
+    for index in range(first + 1, first + count):
+        before, (x, y) = (x, y), _center(index, layout)
+        # A person's outline ends where its body began.
+        moves.append(f"m{x - before[0] - _END[0]:g} {y - before[1] - _END[1]:g}{_PERSON}")
     return "".join(moves)
 
 
