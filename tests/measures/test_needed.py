@@ -76,3 +76,39 @@ def test_rounding_never_flatters(n1: int, n2: int, a: int, c: int) -> None:
     benefit, harm = rounded_needed(exact, "benefit"), rounded_needed(exact, "harm")
     assert harm.value <= exact <= benefit.value
     assert benefit.value - harm.value <= Fraction(1, 10**benefit.decimals)
+
+
+@pytest.mark.parametrize(
+    ("exact", "direction", "limit", "expected"),
+    [
+        (Fraction(186, 10), "benefit", None, RoundedNeeded(Fraction(19), "up", 0)),
+        (Fraction(186, 10), "harm", None, RoundedNeeded(Fraction(18), "down", 0)),
+        (Fraction(186, 10), "benefit", "low", RoundedNeeded(Fraction(18), "down", 0)),
+        (Fraction(186, 10), "harm", "high", RoundedNeeded(Fraction(19), "up", 0)),
+        (Fraction(10), "harm", None, RoundedNeeded(Fraction(10), "down", 0)),
+        (Fraction(1004, 100), "benefit", None, RoundedNeeded(Fraction(11), "up", 0)),
+        (Fraction(999, 100), "benefit", None, RoundedNeeded(Fraction(10), "up", 1)),
+    ],
+)
+def test_rounding_says_its_rule_and_decimals(
+    exact: Fraction, direction: str, limit: str | None, expected: RoundedNeeded
+) -> None:
+    assert rounded_needed(exact, direction, limit=limit) == expected  # type: ignore[arg-type]
+
+
+@pytest.mark.parametrize(
+    ("difference", "unwanted", "direction"),
+    [(-0.2, True, "benefit"), (0.2, True, "harm"), (-0.2, False, "harm"), (0.2, False, "benefit"), (0.0, True, "none")],
+)
+def test_direction(difference: float, unwanted: bool, direction: str) -> None:
+    assert direction_of(difference, unwanted) == direction
+
+
+def test_interval_with_one_limit_undefined_has_no_segment() -> None:
+    assert needed_segments(_interval(math.nan, 0.2), True) == ()
+    assert needed_segments(_interval(-0.2, math.nan), True) == ()
+
+
+def test_segments_of_an_interval_on_one_side() -> None:
+    assert needed_segments(_interval(-0.5, -0.25), True) == (Segment("benefit", 2.0, 4.0),)
+    assert needed_segments(_interval(0.25, 0.5), True) == (Segment("harm", 2.0, 4.0),)

@@ -117,3 +117,17 @@ def test_grouped_counts_read_back(count: int, separator: str) -> None:
 def test_percentages_read_back(hundredths: int, mark: str) -> None:
     text = f"{hundredths // 100}{mark}{hundredths % 100:02d}"
     assert read_number(text, "percentage").value == Decimal(hundredths) / 100
+
+
+def test_the_longest_text_is_still_read() -> None:
+    assert read_number("0" * (LONGEST - 1) + "7", "count").value == 7
+
+
+def test_tabs_and_line_ends_are_trimmed() -> None:
+    assert read_number("\t46\r\n", "count").value == 46
+
+
+def test_one_number_with_something_odd_is_not_several() -> None:
+    with pytest.raises(PrintedProblem) as refused:
+        read_number("46/", "count")
+    assert refused.value.slug == "not_a_number"

@@ -6,6 +6,7 @@ import pytest
 from hypothesis import assume, given
 from hypothesis import strategies as st
 
+from app.printed.claims import Arm
 from app.reconstruct.arm import ArmFits, Run, arm_fits
 from tests.claims_maker import arm_claims
 
@@ -131,3 +132,55 @@ def test_true_total_is_among_those_found(events: int, total: int) -> None:
     share = (Decimal(100 * events) / Decimal(total)).quantize(Decimal("0.1"), ROUND_HALF_UP)
     found = fits(events=str(events), risk=str(share))
     assert found.status == "too_little" or Run(total, events, events) in found.runs
+
+
+INTERVENTION: Arm = "intervention"
+WHOLE: list[tuple[dict[str, str], ArmFits]] = [
+    ({"events": "46", "total": "418"}, ArmFits(INTERVENTION, "fits", (Run(418, 46, 46),), total=418)),
+    ({"events": "0", "total": "1"}, ArmFits(INTERVENTION, "fits", (Run(1, 0, 0),), total=1)),
+    ({"events": "9", "total": "9"}, ArmFits(INTERVENTION, "fits", (Run(9, 9, 9),), total=9)),
+    ({"events": "50", "total": "40"}, ArmFits(INTERVENTION, "contradiction", total=40)),
+    ({"events": "46", "total": "418", "risk": "11.0"}, ArmFits(INTERVENTION, "fits", (Run(418, 46, 46),), total=418)),
+    (
+        {"events": "46", "total": "418", "risk": "10.9"},
+        ArmFits(INTERVENTION, "fits", (Run(418, 46, 46),), last_digit=True, total=418),
+    ),
+    (
+        {"events": "46", "total": "418", "risk": "11.1"},
+        ArmFits(INTERVENTION, "fits", (Run(418, 46, 46),), last_digit=True, total=418),
+    ),
+    ({"events": "46", "total": "418", "risk": "11.2"}, ArmFits(INTERVENTION, "contradiction", (Run(418, 46, 46),), total=418)),
+    ({"risk": "11.0", "total": "418"}, ArmFits(INTERVENTION, "fits", (Run(418, 46, 46),), total=418)),
+    (
+        {"risk": "16", "total": "409"},
+        ArmFits(INTERVENTION, "fits", (Run(409, 64, 67),), if_truncated=Run(409, 68, 69), total=409),
+    ),
+    # 6/53 and 7/62 are the fractions within 25 of 40 people that print 11.3%.
+    (
+        {"risk": "11.3", "total": "40"},
+        ArmFits(INTERVENTION, "none_fits", nearest=(4, 5), other_totals=(53, 62), total=40),
+    ),
+    (
+        {"risk": "66", "total": "3"},
+        ArmFits(INTERVENTION, "none_fits", if_truncated=Run(3, 2, 2), nearest=(1, 2), other_totals=(), total=3),
+    ),
+    ({"risk": "1.2", "total": "9"}, ArmFits(INTERVENTION, "none_fits", nearest=(0, 1), total=9)),
+    ({"risk": "99.4", "total": "3"}, ArmFits(INTERVENTION, "none_fits", nearest=(2, 3), total=3)),
+    (
+        {"events": "1", "risk": "2.0"},
+        ArmFits(INTERVENTION, "fits", (Run(49, 1, 1), Run(50, 1, 1), Run(51, 1, 1))),
+    ),
+    ({"non_events": "372", "risk": "11.0"}, ArmFits(INTERVENTION, "fits", (Run(418, 46, 46),))),
+    ({"non_events": "3", "risk": "100"}, ArmFits(INTERVENTION, "too_little")),
+    ({"total": "40"}, ArmFits(INTERVENTION, "too_little", total=40)),
+    ({}, ArmFits(INTERVENTION, "nothing")),
+]
+
+
+@pytest.mark.parametrize(("texts", "expected"), WHOLE)
+def test_the_whole_answer(texts: dict[str, str], expected: ArmFits) -> None:
+    assert fits(**texts) == expected
+
+
+def test_claims_of_the_other_arm_are_left_alone() -> None:
+    assert arm_fits("comparator", arm_claims("intervention", events="46", total="418")) == ArmFits("comparator", "nothing")
