@@ -145,6 +145,19 @@ def test_what_was_typed_just_before_leaving_is_kept(page: Page, live: LiveServer
     expect(page.locator("#title")).to_have_value("Left at once")
 
 
+def test_a_reload_in_the_middle_of_typing_shows_what_was_typed(page: Page, live: LiveServer) -> None:
+    """The page is asked for before its last words are sent: it used to show the text before them."""
+    open_example(page, live.url)
+    page.fill("#title", "")
+    page.locator("#title").press_sequentially("ABCDEFGHIJ", delay=5)
+    page.reload()
+    expect(page.locator("#title")).to_have_value("ABCDEFGHIJ")
+    page.wait_for_load_state("networkidle")
+    type_into(page, (EVENTS[0], "45"))
+    expect(page.locator("#conflict")).to_have_count(0)
+    expect(page.locator("#title")).to_have_value("ABCDEFGHIJ")
+
+
 def test_answer_to_an_earlier_key_never_overwrites_a_later_one(page: Page, live: LiveServer) -> None:
     """Slow answers: each is held back while the next box is typed."""
     page.goto(live.url)
