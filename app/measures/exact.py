@@ -105,7 +105,7 @@ class _Parts:
 
     `rows` marks those tables; `log_point` is ln P(X = x); the others are sums over that point: `near`
     the tail from x away from the mode, `far` the cells beyond the mode that are as probable or less,
-    `tied` those of them that are as probable.
+    `tied` those of both that are as probable, x itself apart.
     """
 
     rows: Flags
@@ -129,14 +129,24 @@ def _parts(a: Floats, n1: Floats, c: Floats, n2: Floats) -> _Parts:
     boundary = _far_boundary(mode, np.where(upper, lowest, highest), level, n1, m, n2)
     # A mode no more probable than the observed cell is itself where the other tail begins.
     boundary = np.where((mode != a) & (_log_cells(mode, n1, m, n2) <= level), mode, boundary)
-    far, tied = np.zeros_like(a), np.zeros_like(a)
+    boundary = np.where(boundary == a, np.nan, boundary)  # at the end of its range the observed cell has no far side
+    far, tied = np.zeros_like(a), _tied_neighbour(a, cells_point, lowest, highest, (n1, m, n2), upper)
     there = ~np.isnan(boundary)
     if there.any():
         cells = boundary[there], n1[there], m[there], n2[there]
         relative = np.exp(_log_cells(*cells) - cells_point[there])
         far[there] = relative * _tail_ratio(*cells, np.where(upper[there], -1.0, 1.0))
-        tied[there] = np.where(relative > 1.0 - _TIE, relative, 0.0)
+        tied[there] += np.where(relative > 1.0 - _TIE, relative, 0.0)
     return _Parts(rows, log_point, near, far, tied)
+
+
+def _tied_neighbour(
+    a: Floats, cells_point: Floats, lowest: Floats, highest: Floats, margins: tuple[Floats, Floats, Floats], upper: Flags
+) -> Floats:
+    """Of two equal modes the other one, where it lies in the near tail: its probability over that of the observed cell."""
+    beside = np.clip(a + np.where(upper, 1.0, -1.0), lowest, highest)
+    relative = np.exp(_log_cells(beside, *margins) - cells_point)
+    return np.where((beside != a) & (np.abs(relative - 1.0) < _TIE), relative, 0.0)
 
 
 def _log_p(table: Fourfold, combine: Callable[[_Parts], Floats]) -> Floats:

@@ -77,6 +77,10 @@ def mcnemar_exact(first_only: ArrayLike, second_only: ArrayLike) -> Floats:
 def mcnemar_midp(first_only: ArrayLike, second_only: ArrayLike) -> Floats:
     """Mid-P: the exact p less the probability of the observed split (less half of it where both are equal).
 
+    Edge cases
+    ----------
+    No pair that differs: 1, as by the exact test; halving a sure event would read as evidence.
+
     References
     ----------
     fagerland_2013.
@@ -85,4 +89,4 @@ def mcnemar_midp(first_only: ArrayLike, second_only: ArrayLike) -> Floats:
     n = b + c
     log_point = special.gammaln(n + 1.0) - special.gammaln(b + 1.0) - special.gammaln(c + 1.0) - n * np.log(2.0)
     point = np.exp(log_point)
-    return np.asarray(np.where(b == c, 1.0 - 0.5 * point, mcnemar_exact(b, c) - point))
+    return np.asarray(np.where(n == 0.0, 1.0, np.where(b == c, 1.0 - 0.5 * point, mcnemar_exact(b, c) - point)))

@@ -193,7 +193,7 @@ def _breslow_day(strata: Fourfold, tarone: bool) -> StrataTest:
         variance = 1.0 / (1.0 / fit + 1.0 / (n1 - fit) + 1.0 / (m - fit) + 1.0 / (n2 - m + fit))
     statistic = float(((a - fit) ** 2 / variance).sum())
     if tarone:
-        statistic -= float((a - fit).sum()) ** 2 / float(variance.sum())
+        statistic = max(0.0, statistic - float((a - fit).sum()) ** 2 / float(variance.sum()))
     return _chi_squared(statistic, df)
 
 

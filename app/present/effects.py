@@ -111,7 +111,7 @@ def segment_text(segment: Segment) -> tuple[str, str]:
         if math.isinf(value):
             ends.append(needed(math.inf, 0))
         else:
-            rounded = rounded_needed(Fraction(value), segment.direction, limit=limit)  # type: ignore[arg-type]
+            rounded = rounded_needed(max(Fraction(1), Fraction(value)), segment.direction, limit=limit)  # type: ignore[arg-type]
             ends.append(needed(rounded.value, rounded.decimals))
     return ends[0], ends[1]
 
