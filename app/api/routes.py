@@ -10,13 +10,13 @@ from typing import Annotated, Any
 from fastapi import APIRouter, Depends, Request
 from fastapi.responses import JSONResponse
 
-from app.api import answers, schemas
+from app.api import answers, check_schemas, checks, schemas
 from app.api.answers import Json
 from app.api.shapes import Problems, Shape
 from app.appraisal.effects import effects_of
 from app.appraisal.rates import rates_of
 from app.errors import FieldProblem, InputProblems
-from app.intake import counts, estimates
+from app.intake import claims, counts, estimates
 
 _REFUSALS: dict[int | str, dict[str, Any]] = {
     status: {"model": Problems, "description": description}
@@ -75,6 +75,13 @@ def _rates(body: Any) -> Json:
 
 
 ENDPOINTS: tuple[Endpoint, ...] = (
+    Endpoint(
+        "/check",
+        "Every table that prints so, and a verdict for each printed number.",
+        check_schemas.CheckRequest,
+        check_schemas.CheckAnswer,
+        lambda body: checks.check_answer(claims.claims_input(body)),
+    ),
     Endpoint(
         "/effects",
         "Every measure, interval and p value that one fourfold table gives.",

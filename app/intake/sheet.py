@@ -202,7 +202,7 @@ def gather(sheet: Sheet) -> Gathered:
                 if read.grouped:
                     read_as[name] = read
                 unit = "percent" if spec.kind == "percentage" else "people"
-                mine.append(Claim(name, spec.quantity, arm, read, unit))  # type: ignore[arg-type]
+                mine.append(Claim(name, spec.quantity, arm, read, unit))
             across = _across(i, j, numbers)
             problems += refused + across
             if not across:

@@ -32,6 +32,16 @@ def _on_scale(value: ArrayLike, scale: Scale) -> Floats:
         return np.log(array) if scale == "ratio" else array
 
 
+def p_of_z(z: float) -> float:
+    """Two-sided p of a standard normal deviate."""
+    return float(2.0 * special.ndtr(-abs(z)))
+
+
+def z_of_p(p: float) -> float:
+    """Size of the standard normal deviate whose two-sided p it is; inf for 0."""
+    return float(-special.ndtri(p / 2.0))
+
+
 def standard_error(low: ArrayLike, high: ArrayLike, scale: Scale, confidence_level: float = 0.95) -> Floats:
     """Standard error behind an interval that is symmetric on its scale: width / (2 z).
 

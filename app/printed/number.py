@@ -17,7 +17,8 @@ from typing import Literal
 from app.errors import PrintedProblem
 from app.printed.span import Span
 
-Kind = Literal["count", "percentage"]
+Kind = Literal["count", "percentage", "decimal", "signed"]
+"""What a number is: people, a percentage, a number of 0 or more, or one that may be negative."""
 
 LONGEST = 40
 """Longest text read as a number; the largest number papers print is far shorter."""
@@ -34,6 +35,10 @@ _SHAPE = re.compile(
 )
 _FIGURES = re.compile(r"(?<![0-9a-zA-Z])[0-9]+(?![0-9a-zA-Z])")
 _SEVERAL = re.compile(rf"(?:[0-9{_BLANKS}{_RAISED}.,/()%=:;]|of|n)+", re.IGNORECASE)  # "46/418 (11.0%)", "71 of 412"
+_POWER = re.compile(
+    rf"[{_BLANKS}]*(?:[x\u00d7][{_BLANKS}]*10[{_BLANKS}]*\^?|[eE])[{_BLANKS}]*(?P<power>[{_MINUS}]?[0-9]{{1,3}})$"
+)
+_SUPERSCRIPTS = str.maketrans("\u2070\u00b9\u00b2\u00b3\u2074\u2075\u2076\u2077\u2078\u2079\u207b", "0123456789-")
 _PERCENT = re.compile(rf"[{_BLANKS}]*(?:%|\uff05|per cent|percent)$", re.IGNORECASE)
 
 
@@ -58,7 +63,7 @@ class PrintedNumber:
     @property
     def unit_in_last_place(self) -> Fraction:
         """One unit of the last printed digit."""
-        return Fraction(1, 10**self.decimals)
+        return Fraction(10) ** -self.decimals
 
     def rounds_from(self) -> Span:
         """The true values that print so, under half-up or half-even: the closed half unit either side."""
@@ -66,19 +71,30 @@ class PrintedNumber:
         return Span(self.exact - half, self.exact + half)
 
     def truncates_from(self) -> Span:
-        """The true values that print so when further digits are cut off."""
-        return Span(self.exact, self.exact + self.unit_in_last_place, closed=False)
+        """The true values that print so when further digits are cut off (towards 0)."""
+        away = self.unit_in_last_place
+        if self.exact < 0:
+            return Span(self.exact - away, self.exact)
+        return Span(self.exact, self.exact + away, closed=False)
+
+
+def _power_of_ten(bare: str) -> tuple[str, int]:
+    """The text without a power of ten at its end ("3.2 × 10⁻⁵", "3.2e-5"), and the exponent."""
+    found = _POWER.search(bare.translate(_SUPERSCRIPTS))
+    if not found:
+        return bare, 0
+    return bare[: found.start()], int(re.sub(f"[{_MINUS}]", "-", found["power"]))
 
 
 def read_number(text: str, kind: Kind) -> PrintedNumber:
-    """Read one typed or printed number that is not negative.
+    """Read one typed or printed number.
 
     Parameters
     ----------
     text : str
-        The number alone; a percentage may carry its sign or the word.
-    kind : "count" or "percentage"
-        What it counts: decides what a lone separator means.
+        The number alone; any but a count may carry a per cent sign or the word, or a power of ten.
+    kind : "count", "percentage", "decimal" or "signed"
+        What it is: decides what a lone separator means, and whether it may be negative.
 
     Raises
     ------
@@ -91,15 +107,17 @@ def read_number(text: str, kind: Kind) -> PrintedNumber:
     without_percent = _PERCENT.sub("", bare)
     if kind == "count" and without_percent != bare:
         raise PrintedProblem("percent_sign_on_count", text)
+    without_percent, power = (without_percent, 0) if kind == "count" else _power_of_ten(without_percent)
     found = _SHAPE.fullmatch(without_percent)
     if not found or not any(character.isdigit() for character in found["body"]):
         several = _SEVERAL.fullmatch(bare) and len(_FIGURES.findall(bare)) > 1
         raise PrintedProblem("several_numbers" if several else "not_a_number", text)
-    if found["sign"] and found["sign"] != "+":
+    negative = bool(found["sign"]) and found["sign"] != "+"
+    if negative and kind != "signed":
         raise PrintedProblem("negative", text)
     body, group, decimals = found["body"], found["group"], found["decimals"]
-    if kind == "percentage" and group in {".", ","} and body.count(group) == 1 and decimals is None:
-        # 1,234 as a percentage is 1.234: there is no percentage of a thousand and more.
+    if kind != "count" and group in {".", ","} and body.count(group) == 1 and decimals is None:
+        # 1,234 as a percentage or ratio is 1.234: there are hardly any of a thousand and more.
         group, decimals = None, body.split(found["group"])[1]
         whole = body.split(found["group"])[0]
     else:
@@ -109,4 +127,5 @@ def read_number(text: str, kind: Kind) -> PrintedNumber:
     if kind == "count" and decimals is not None:
         raise PrintedProblem("count_with_decimals", text)
     value = Decimal(f"{whole or '0'}.{decimals}") if decimals else Decimal(whole or "0")
-    return PrintedNumber(text, value, len(decimals or ""), grouped=group is not None)
+    value = (-value if negative else value).scaleb(power)
+    return PrintedNumber(text, value, len(decimals or "") - power, grouped=group is not None)

@@ -71,27 +71,31 @@ class ArmFits:
 
 
 def _risk_span(claim: Claim) -> Span:
-    return claim.number.rounds_from().scaled(Fraction(1, 100))
+    return claim.said.rounds_from().scaled(Fraction(1, 100))
 
 
 def _units_off(claim: Claim, risk: Fraction) -> int:
     """0 if `risk` rounds to the printed percentage, 1 if it is at most one unit further, else 2."""
-    span, unit = claim.number.rounds_from(), claim.number.unit_in_last_place
+    span, unit = claim.said.rounds_from(), claim.said.unit_in_last_place
     percent = risk * 100
     if span.holds(percent):
         return 0
     return 1 if Span(span.low - unit, span.high + unit).holds(percent) else 2
 
 
-def _totals(people: int, share: Span) -> tuple[Run, ...] | None:
-    """Totals among which `people` are the given share, as runs of that one count; None if unbounded."""
+def totals_of(people: int, share: Span) -> tuple[int, int] | None:
+    """First and last total among which `people` are the given share; None if too many."""
     if people == 0 or share.low <= 0:
         return None
     first = max(people, -(-people * share.high.denominator // share.high.numerator))
     last = people * share.low.denominator // share.low.numerator
-    if last - first >= _MOST_TOTALS:
-        return None
-    return tuple(Run(total, people, people) for total in range(first, last + 1))
+    return None if last - first >= _MOST_TOTALS else (first, last)
+
+
+def _totals(people: int, share: Span) -> tuple[Run, ...] | None:
+    """Those totals as runs of that one count."""
+    ends = totals_of(people, share)
+    return None if ends is None else tuple(Run(total, people, people) for total in range(ends[0], ends[1] + 1))
 
 
 def _unknown_total(events: int | None, others: int | None, share: Span) -> tuple[Run, ...] | None:
@@ -117,12 +121,12 @@ def _from_total(arm: Arm, total: int, claim: Claim) -> ArmFits:
     """Every count among `total` that rounds to the printed percentage, and its neighbours if none does."""
     span = _risk_span(claim)
     first, last = span.scaled(Fraction(total)).whole(total)
-    cut_first, cut_last = claim.number.truncates_from().scaled(Fraction(total, 100)).whole(total)
+    cut_first, cut_last = claim.said.truncates_from().scaled(Fraction(total, 100)).whole(total)
     cut_first = max(cut_first, last + 1)
     truncated = Run(total, cut_first, cut_last) if cut_first <= cut_last else None
     if first <= last:
         return ArmFits(arm, "fits", (Run(total, first, last),), truncated, total=total)
-    below = claim.number.exact * total / 100
+    below = claim.said.exact * total / 100
     near = below.numerator // below.denominator
     others = [
         candidate
@@ -141,7 +145,7 @@ def _from_total(arm: Arm, total: int, claim: Claim) -> ArmFits:
 
 def _whole(claims: Mapping[Quantity, Claim], quantity: Quantity) -> int | None:
     claim = claims.get(quantity)
-    return None if claim is None else int(claim.number.value)
+    return None if claim is None else int(claim.said.value)
 
 
 def arm_fits(arm: Arm, claims: Iterable[Claim]) -> ArmFits:
