@@ -14,6 +14,13 @@
   document.addEventListener("htmx:before:request", () => { typed = false; });
   document.addEventListener("htmx:after:request", () => say(true));
   document.addEventListener("htmx:error", () => { typed = true; say(false); });
+  // An outcome just added wants its name first.
+  let added = false;
+  document.addEventListener("click", (event) => { added = event.target.id === "add-outcome"; });
+  document.addEventListener("htmx:after:swap", () => {
+    if (added) document.querySelector("#sheet [autofocus]")?.focus();
+    added = false;
+  });
   addEventListener("pagehide", () => {
     if (!typed || !form()) return;
     navigator.sendBeacon(form().action, new URLSearchParams(new FormData(form())));
@@ -21,7 +28,8 @@
   });
   // A reload asks for the page before the one it leaves can send its last words: look once more.
   if (sessionStorage.getItem(LEFT) === location.pathname) {
-    setTimeout(() => location.reload(), 300);
+    const again = setTimeout(() => location.reload(), 300);
+    for (const kind of ["keydown", "pointerdown", "input"]) addEventListener(kind, () => clearTimeout(again), { once: true });
   }
   sessionStorage.removeItem(LEFT);
   document.documentElement.classList.add("scripted");

@@ -36,6 +36,14 @@ def _refuse_constant(name: str) -> float:
     raise ValueError(f"{name} is not JSON")
 
 
+def _once(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
+    """An object none of whose names stands twice."""
+    found = dict(pairs)
+    if len(found) < len(pairs):
+        raise ValueError("a name stands twice in one object")
+    return found
+
+
 async def json_body(request: Request) -> Any:
     """The body as JSON, strictly: no NaN, no lone surrogate, declared as JSON."""
     kind = request.headers.get("content-type", "").partition(";")[0].strip().lower()
@@ -44,10 +52,10 @@ async def json_body(request: Request) -> Any:
         raise InputProblems([FieldProblem("", "The body is not declared as JSON.", hint, "not_json")])
     body = await request.body()
     try:
-        found = json.loads(body.decode("utf-8"), parse_constant=_refuse_constant)
+        found = json.loads(body.decode("utf-8"), parse_constant=_refuse_constant, object_pairs_hook=_once)
         json.dumps(found, ensure_ascii=False).encode("utf-8")
     except (ValueError, RecursionError) as refused:
-        hint = "Check brackets, quotes and numbers; NaN and Infinity are not JSON."
+        hint = "Check brackets, quotes and numbers; NaN, Infinity and a name given twice are refused."
         raise InputProblems([FieldProblem("", "The body is not JSON.", hint, "not_json")]) from refused
     return found
 

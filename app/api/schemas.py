@@ -33,6 +33,13 @@ class ArmCounts(Shape):
     total: Total
 
 
+class MissingCounts(Shape):
+    """People randomised whose outcome is not known, per arm. They take no part in the figures."""
+
+    intervention: Events | None = None
+    comparator: Events | None = None
+
+
 class EffectsRequest(Shape):
     """One fourfold table."""
 
@@ -41,6 +48,8 @@ class EffectsRequest(Shape):
     confidence_level: Level = 0.95
     event_is: EventIs = "unwanted"
     design: Literal["trial", "cohort", "case_control"] = "trial"
+    per: Annotated[float, Field(ge=1e-3, le=1e9)] = 1.0
+    missing: MissingCounts | None = None
     exact_unconditional: bool = False
 
 

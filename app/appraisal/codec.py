@@ -6,9 +6,24 @@ import json
 from dataclasses import asdict
 from typing import Any, TypeVar
 
-from app.appraisal.sheet import CONFIDENCE_LEVELS, DESIGNS, EVENT_IS, FOLLOW_UP, Sheet, TypedArm, TypedOutcome
+from app.appraisal.fields import FIGURES
+from app.appraisal.sheet import (
+    CONFIDENCE_LEVELS,
+    DESIGNS,
+    EVENT_IS,
+    FIGURE_LEVELS,
+    FOLLOW_UP,
+    PART_OF,
+    TRUST,
+    WORDS,
+    Sheet,
+    TypedArm,
+    TypedFigure,
+    TypedOutcome,
+)
+from app.printed.claims import ARMS, BASES, PLACES
 
-VERSION = 2
+VERSION = 3
 
 _Choice = TypeVar("_Choice", bound=str)
 
@@ -31,6 +46,22 @@ def _choice(value: Any, allowed: tuple[_Choice, ...]) -> _Choice:
     raise ValueError(f"not one of {allowed}")
 
 
+def _figure(figure: dict[str, Any]) -> TypedFigure:
+    return TypedFigure(
+        key=_text(figure["key"]),
+        kind=_choice(figure["kind"], tuple(FIGURES)),
+        value=_text(figure["value"]),
+        low=_text(figure["low"]),
+        high=_text(figure["high"]),
+        level=_choice(figure["level"], FIGURE_LEVELS),
+        basis=_choice(figure["basis"], BASES),
+        place=_choice(figure["place"], ("", *PLACES)),
+        arm=_choice(figure["arm"], ("", *ARMS)),
+        word=_choice(figure["word"], WORDS),
+        label=_text(figure["label"]),
+    )
+
+
 def decode(text: str) -> Sheet:
     """A sheet from JSON text of any version so far.
 
@@ -45,6 +76,8 @@ def decode(text: str) -> Sheet:
     sheet = document["sheet"]
     if document["version"] < 2:
         sheet = {**sheet, "design": "trial"}  # the only design there was
+    if document["version"] < 3:
+        sheet = {**sheet, "outcomes": [{**o, "figures": [], "trust": "", "part_of": ""} for o in sheet["outcomes"]]}
     outcomes = tuple(
         TypedOutcome(
             name=_text(outcome["name"]),
@@ -53,6 +86,9 @@ def decode(text: str) -> Sheet:
             horizon=_text(outcome["horizon"]),
             follow_up=_choice(outcome["follow_up"], FOLLOW_UP),
             arms=tuple(TypedArm(**{key: _text(value) for key, value in arm.items()}) for arm in outcome["arms"]),
+            figures=tuple(_figure(figure) for figure in outcome["figures"]),
+            trust=_choice(outcome["trust"], TRUST),
+            part_of=_choice(outcome["part_of"], PART_OF),
         )
         for outcome in sheet["outcomes"]
     )

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from app.appraisal.sheet import Sheet, TypedArm, TypedOutcome
+from app.appraisal.sheet import Sheet, TypedArm, TypedFigure, TypedOutcome
 
 LEG_ULCER = Sheet(
     title="Nurse-led compression review after a healed leg ulcer",
@@ -16,6 +16,11 @@ LEG_ULCER = Sheet(
             horizon="12 months",
             follow_up="fixed",
             arms=(TypedArm(events="46", total="418"), TypedArm(total="409", percentage="16·4%")),
+            figures=(
+                TypedFigure("1", "risk_ratio", "0·67", "0·47", "0·95"),
+                TypedFigure("2", "relative_risk_reduction", "67", place="abstract"),
+                TypedFigure("3", "p_value", "0·024"),
+            ),
         ),
         TypedOutcome(
             name="Skin irritation",

@@ -7,12 +7,13 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import NamedTuple
 
-from app.appraisal.sheet import Design, EventIs, FollowUp
+from app.appraisal.sheet import Design, EventIs, FollowUp, PartOf, Trust
 from app.measures.needed import RoundedNeeded, Segment
 from app.measures.registry import EffectMethod, Measure, NoDifferenceTest, RiskMethod
 from app.printed.claims import Claim
 from app.reconstruct.arm import ArmFits
 from app.reconstruct.tables import Fits
+from app.reconstruct.verdict import OutcomeCheck
 
 
 @dataclass(frozen=True, slots=True)
@@ -25,6 +26,8 @@ class OutcomeInput:
     follow_up: FollowUp = "not_said"
     confidence_level: float = 0.95
     design: Design = "trial"
+    trust: Trust = ""
+    part_of: PartOf = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -120,6 +123,7 @@ class OutcomeAppraisal:
     comparator: RiskAppraisal | None
     both: BothArms | None
     notes: tuple[Note, ...]
+    check: OutcomeCheck
 
 
 @dataclass(frozen=True, slots=True)

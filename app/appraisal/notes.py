@@ -18,8 +18,6 @@ ODDS_PART = 1.10
 
 def _arm_notes(arm: ArmFits) -> list[Note]:
     evidence: dict[str, object] = {"arm": arm.arm, "total": arm.total}
-    if arm.status == "contradiction":
-        return [Note("contradict_each_other", {**evidence, "run": arm.runs[0] if arm.runs else None})]
     if arm.status == "none_fits":
         return [
             Note(
@@ -35,8 +33,6 @@ def _arm_notes(arm: ArmFits) -> list[Note]:
     notes = []
     if arm.if_truncated is not None:
         notes.append(Note("more_if_truncated", {**evidence, "run": arm.if_truncated}))
-    if arm.last_digit:
-        notes.append(Note("last_digit_differs", {**evidence, "run": arm.runs[0]}))
     return notes
 
 
@@ -85,6 +81,8 @@ def notes_on(
         notes.append(Note("case_control_refuses"))
     elif given.event_is == "not_said":
         notes.append(Note("wanted_not_said"))
+    if given.design == "case_control":
+        return tuple(notes + _odds_part(both.measures))
     if given.follow_up != "fixed":
         notes.append(Note("naive_follow_up", {"follow_up": given.follow_up}))
     if not given.horizon:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from fractions import Fraction
 
 import numpy as np
@@ -23,9 +24,11 @@ from app.appraisal.notes import notes_on
 from app.measures.fourfold import Floats, Fourfold
 from app.measures.interval import Interval
 from app.measures.needed import direction_of, needed_segments, rounded_needed
-from app.printed.claims import ARMS
+from app.printed.claims import ARMS, Claim
 from app.reconstruct.arm import ArmFits, arm_fits
-from app.reconstruct.tables import ends, tables_that_fit
+from app.reconstruct.judge import check_outcome
+from app.reconstruct.tables import Fits, ends, joined, tables_that_fit
+from app.reconstruct.verdict import OutcomeCheck
 
 
 def range_of(values: Floats) -> Range:
@@ -79,8 +82,7 @@ def _needed(effects: Effects, unwanted: bool) -> NeededAppraisal:
     return NeededAppraisal((near, far), (rounded_needed(near, sense), rounded_needed(far, sense)), sense, segments, others)
 
 
-def _both(intervention: RiskAppraisal, comparator: RiskAppraisal, given: OutcomeInput) -> BothArms:
-    fits = tables_that_fit(intervention.fits, comparator.fits)
+def _both(intervention: RiskAppraisal, comparator: RiskAppraisal, given: OutcomeInput, fits: Fits) -> BothArms:
     effects = effects_of(fits.tables, given.confidence_level)
     measures = {
         measure: MeasureAppraisal(
@@ -96,10 +98,35 @@ def _both(intervention: RiskAppraisal, comparator: RiskAppraisal, given: Outcome
 
 def appraise_outcome(given: OutcomeInput) -> OutcomeAppraisal:
     """All that follows from one outcome's claims."""
-    first, second = (arm_fits(arm, given.claims) for arm in ARMS)
-    intervention, comparator = (_risk(fits, given.confidence_level) for fits in (first, second))
-    both = _both(intervention, comparator, given) if intervention and comparator else None
-    return OutcomeAppraisal(given, intervention, comparator, both, notes_on(given, first, second, both))
+    check = check_outcome(given.claims, trust=given.trust)
+    first, second = (arm_fits(arm, _of_arm(given.claims)) for arm in ARMS)
+    fits = None
+    if _joint(given.claims, check):
+        found = check.tables.tables
+        if found is not None:
+            first, second, fits = joined(found, check.tables.count, complete=check.tables.complete)
+    intervention, comparator = (_risk(arm, given.confidence_level) for arm in (first, second))
+    both = None
+    if intervention and comparator:
+        both = _both(intervention, comparator, given, fits or tables_that_fit(first, second))
+    return OutcomeAppraisal(given, intervention, comparator, both, notes_on(given, first, second, both), check)
+
+
+_BOX = ("events", "non_events", "total", "risk")
+
+
+def _of_arm(claims: Sequence[Claim]) -> tuple[Claim, ...]:
+    """The first claim of each box of each arm: what an arm allows by itself."""
+    mine: dict[tuple[str | None, str], Claim] = {}
+    for claim in claims:
+        if claim.quantity in _BOX and claim.arm is not None and claim.checkable and claim.total_kind is None:
+            mine.setdefault((claim.arm, claim.quantity), claim)
+    return tuple(mine.values())
+
+
+def _joint(claims: Sequence[Claim], check: OutcomeCheck) -> bool:
+    """Whether tables are settled by more than each arm's own boxes."""
+    return bool(check.set_aside) or len(_of_arm(claims)) < len(claims)
 
 
 def _p_range(p: Floats, effects: Effects) -> Range:

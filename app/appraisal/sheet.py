@@ -5,6 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import Literal
 
+from app.printed.claims import Basis, Place
+
 EventIs = Literal["not_said", "unwanted", "wanted"]
 FollowUp = Literal["fixed", "varies", "not_said"]
 
@@ -26,9 +28,43 @@ class TypedArm:
     percentage: str = ""
 
 
+Trust = Literal["", "counts", "percentages"]
+PartOf = Literal["", "component", "category"]
+TRUST: tuple[Trust, ...] = ("", "counts", "percentages")
+PART_OF: tuple[PartOf, ...] = ("", "component", "category")
+FIGURE_LEVELS: tuple[str, ...] = ("80", "90", "95", "97.5", "98", "99", "99.5", "99.9")
+MOST_OUTCOMES = 60
+WORDS: tuple[str, ...] = ("", "lower", "higher")
+
+
+@dataclass(frozen=True, slots=True)
+class TypedFigure:
+    """One more number that the paper prints, as typed.
+
+    `key` is its own among the figures of the outcome and never used again; `kind` is a key of
+    `app.appraisal.fields.FIGURES`; `word` is the paper's word of direction; `label` what the paper calls it.
+    """
+
+    key: str
+    kind: str = "risk_ratio"
+    value: str = ""
+    low: str = ""
+    high: str = ""
+    level: str = "95"
+    basis: Basis = "unstated"
+    place: Place | Literal[""] = ""
+    arm: Literal["", "intervention", "comparator"] = ""
+    word: str = ""
+    label: str = ""
+
+
 @dataclass(frozen=True, slots=True)
 class TypedOutcome:
-    """What is typed of one outcome; `arms` runs as the sheet's arms do."""
+    """What is typed of one outcome; `arms` runs as the sheet's arms do.
+
+    `trust` is what the reader goes by where counts and percentages contradict each other; `part_of` how
+    the outcome belongs to the first one of the sheet.
+    """
 
     name: str = ""
     counted: str = ""
@@ -36,6 +72,9 @@ class TypedOutcome:
     horizon: str = ""
     follow_up: FollowUp = "not_said"
     arms: tuple[TypedArm, ...] = (TypedArm(), TypedArm())
+    figures: tuple[TypedFigure, ...] = ()
+    trust: Trust = ""
+    part_of: PartOf = ""
 
 
 @dataclass(frozen=True, slots=True)

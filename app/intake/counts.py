@@ -101,6 +101,12 @@ def effects_input(given: Any) -> EffectsInput:
     """
     body = Body(given, (*_ARMS, "confidence_level", "event_is", "design", "per", "missing", "exact_unconditional"))
     table = _table(body)
+    body.number("per", _SHORTEST_TIME, _LONGEST_TIME, default=1.0)
+    if body.has("missing"):
+        missing = body.inner("missing", _ARMS, '{"intervention": 14, "comparator": 13}')
+        for name in _ARMS:
+            if missing.has(name):
+                missing.whole(name)
     found = EffectsInput(
         table,
         body.confidence_level(),

@@ -126,10 +126,20 @@ def back_input(given: Any) -> BackInput:
     body = Body(given, ("scale", *_ESTIMATE, "p", "confidence_level", "sides"))
     scale = body.choice("scale", _SCALES)
     level = body.confidence_level()
-    sides = int(body.number("sides", 1, 2, default=2) or 2)
+    sides = 2
+    if body.has("sides"):
+        given_sides = body.given["sides"]
+        if given_sides in (1, 2) and not isinstance(given_sides, bool):
+            sides = int(given_sides)
+        else:
+            body.add("sides", "A test has one side or two.", "Give 1 or 2.", "unknown_choice")
     if body.has("p"):
         estimate = body.number("estimate", _SMALLEST if scale == "ratio" else -_LARGEST, _LARGEST)
         p = body.number("p", _SMALLEST_P, 1.0)
+        if estimate is not None and estimate == (1.0 if scale == "ratio" else 0.0):
+            body.add(
+                "estimate", "From no effect and a p no interval can be had.", "Give an estimate with an effect.", "no_effect"
+            )
         for field in ("low", "high"):
             if body.has(field):
                 body.add(field, "Limits and p are both given.", "Give the limits, or p.", "unknown_field")

@@ -50,6 +50,8 @@ _SENTENCES: dict[str, tuple[str, str]] = {
         "No whole number of people gives this percentage.",
         "Check the total and the percentage; the note says which counts and totals come near.",
     ),
+    "limits_reversed": ("The lower limit {low} is above the upper limit {high}.", "Check both limits and their signs."),
+    "which_arm": ("Which arm this number is of is not said.", "Choose the arm under More."),
     "proportion_typed": (
         "No whole number of people gives this percentage.",
         "If {printed} is a proportion, type it as a percentage, {hundredfold}.",

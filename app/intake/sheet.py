@@ -2,18 +2,20 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 from decimal import Decimal
 from typing import cast
 
 from app.appraisal.fields import (
+    FIGURES,
     NUMBER_FIELDS,
     TEXT_LIMIT,
     ArmPart,
     NumberField,
     arm_field,
     arm_name_field,
+    figure_field,
     outcome_field,
 )
 from app.appraisal.model import AppraisalInput, OutcomeInput
@@ -21,18 +23,27 @@ from app.appraisal.sheet import (
     CONFIDENCE_LEVELS,
     DESIGNS,
     EVENT_IS,
+    FIGURE_LEVELS,
     FOLLOW_UP,
+    MOST_OUTCOMES,
+    PART_OF,
+    TRUST,
+    WORDS,
     Design,
     EventIs,
     FollowUp,
+    PartOf,
     Sheet,
+    Trust,
     TypedArm,
+    TypedFigure,
     TypedOutcome,
 )
 from app.errors import FieldProblem, PrintedProblem
+from app.intake.figures import MOST_FIGURES, read_figure
 from app.intake.problems import printed_problem, problem
 from app.measures.fourfold import LARGEST_TOTAL
-from app.printed.claims import ARMS, Claim
+from app.printed.claims import ARMS, BASES, PLACES, Arm, Basis, Claim, Place
 from app.printed.number import PrintedNumber, read_number
 from app.reconstruct.arm import ArmFits, arm_fits
 
@@ -62,6 +73,7 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
             TypedArm(**{f.part: text(arm_field(i, j, f.part), getattr(arm, f.part)) for f in NUMBER_FIELDS})
             for j, arm in enumerate(outcome.arms)
         )
+        figures = tuple(_figure_from_form(i, figure, choice, text) for figure in outcome.figures)
         outcomes.append(
             TypedOutcome(
                 name=text(outcome_field(i, "name"), outcome.name),
@@ -70,8 +82,12 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
                 horizon=text(outcome_field(i, "horizon"), outcome.horizon),
                 follow_up=cast("FollowUp", choice(outcome_field(i, "follow_up"), FOLLOW_UP, outcome.follow_up)),
                 arms=arms,
+                figures=figures,
+                trust=cast("Trust", choice(outcome_field(i, "trust"), TRUST, outcome.trust)),
+                part_of=cast("PartOf", choice(outcome_field(i, "part_of"), PART_OF, outcome.part_of)),
             )
         )
+    outcomes = _asked_for(form, outcomes)
     return replace(
         current,
         title=text("title", current.title),
@@ -81,6 +97,49 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
         confidence_level=choice("confidence_level", CONFIDENCE_LEVELS, current.confidence_level),
         design=cast("Design", choice("design", DESIGNS, current.design)),
     )
+
+
+def _figure_from_form(
+    outcome: int,
+    figure: TypedFigure,
+    choice: Callable[[str, tuple[str, ...], str], str],
+    text: Callable[[str, str], str],
+) -> TypedFigure:
+    def name(part: str) -> str:
+        return figure_field(outcome, figure.key, part)
+
+    return TypedFigure(
+        key=figure.key,
+        kind=choice(name("kind"), tuple(FIGURES), figure.kind),
+        value=text(name("value"), figure.value),
+        low=text(name("low"), figure.low),
+        high=text(name("high"), figure.high),
+        level=choice(name("level"), FIGURE_LEVELS, figure.level),
+        basis=cast("Basis", choice(name("basis"), BASES, figure.basis)),
+        place=cast("Place", choice(name("place"), ("", *PLACES), figure.place)),
+        arm=cast("Arm", choice(name("arm"), ("", *ARMS), figure.arm)),
+        word=choice(name("word"), WORDS, figure.word),
+        label=text(name("label"), figure.label),
+    )
+
+
+def _asked_for(form: Mapping[str, str], outcomes: list[TypedOutcome]) -> list[TypedOutcome]:
+    """The outcomes with an outcome or a further number added, or a number taken away, where a button asked for it."""
+    shown = form.get("outcome", "0")
+    place = int(shown) if shown.isascii() and shown.isdigit() and len(shown) < 4 else 0
+    if place >= len(outcomes):
+        return outcomes
+    if "add-outcome" in form and len(outcomes) < MOST_OUTCOMES:
+        last = outcomes[-1]
+        return [*outcomes, TypedOutcome(horizon=last.horizon, follow_up=last.follow_up)]
+    of = outcomes[place]
+    if "add-figure" in form and len(of.figures) < MOST_FIGURES:
+        key = str(max((int(f.key) for f in of.figures), default=0) + 1)
+        kind = form["add-figure"] if form["add-figure"] in FIGURES else "risk_ratio"
+        of = replace(of, figures=(*of.figures, TypedFigure(key, kind)))
+    if "remove-figure" in form:
+        of = replace(of, figures=tuple(f for f in of.figures if f.key != form["remove-figure"]))
+    return [*outcomes[:place], of, *outcomes[place + 1 :]]
 
 
 def _texts(sheet: Sheet) -> list[FieldProblem]:
@@ -207,6 +266,10 @@ def gather(sheet: Sheet) -> Gathered:
             problems += refused + across
             if not across:
                 claims += mine
+        for figure in outcome.figures:
+            claim, refused = read_figure(i, figure, outcome.horizon.strip())
+            problems += refused
+            claims += [claim] if claim is not None else []
         outcomes.append(
             OutcomeInput(
                 tuple(claims),
@@ -215,6 +278,8 @@ def gather(sheet: Sheet) -> Gathered:
                 outcome.follow_up,
                 int(sheet.confidence_level) / 100,
                 sheet.design,
+                outcome.trust,
+                outcome.part_of,
             )
         )
     return Gathered(AppraisalInput(tuple(outcomes)), tuple(problems), read_as)

@@ -16,6 +16,7 @@ from app.present.figures.strip import Marks, strip
 from app.present.numerals import (
     UNDEFINED,
     decimals_showing_sides,
+    difference_decimals,
     fixed,
     needed,
     per_1000_decimals,
@@ -23,6 +24,7 @@ from app.present.numerals import (
     ratio_decimals,
     sizes,
     spread,
+    step_decimals,
 )
 from app.present.wording import DIRECTIONS, FEWER_MORE, LOWER_HIGHER, NAIVE, PER_CENT, POINTS, Names, signed_spread
 
@@ -66,7 +68,9 @@ def difference_views(both: BothArms, names: Names, decimals: int, given: Outcome
     """Risk difference and number needed to treat."""
     result = both.measures["risk_difference"]
     low, high = hull(result.default)
-    shared = decimals_showing_sides([100 * v for v in (*result.estimate, low, high)], max(decimals, 1), (0.0,))
+    low, high = max(low, -1.0), min(high, 1.0)  # some formulas leave the scale
+    least = difference_decimals([100 * v for v in result.estimate], max(decimals, 1))
+    shared = decimals_showing_sides([100 * v for v in (*result.estimate, low, high)], least, (0.0,))
 
     def points(values: Sequence[float], words: tuple[str, str] = LOWER_HIGHER) -> str:
         return signed_spread(values, sizes(values, 100.0, shared), words)
@@ -92,16 +96,23 @@ def difference_views(both: BothArms, names: Names, decimals: int, given: Outcome
                 high,
                 0.0,
                 False,
-                lambda v: fixed(100 * v, decimals_showing_sides((100 * v,), 0, (0.0,))) if abs(v) > 1e-12 else "0",
+                lambda v, step: fixed(100 * v, step_decimals(100 * step)) if abs(v) > 1e-12 else "0",
                 f"Risk difference {value}, interval {interval}, no effect at 0",
             )
         ),
         naive=NAIVE[given.follow_up],
         others=tuple(
-            OtherInterval(method.name, points(hull(other))) for method, other in result.intervals if not method.default
+            OtherInterval(method.name, points(_within_scale(hull(other))))
+            for method, other in result.intervals
+            if not method.default
         ),
     )
     return difference, _needed_view(both, names, difference, given.event_is)
+
+
+def _within_scale(ends: tuple[float, float]) -> tuple[float, float]:
+    """Limits of a difference of risks, cut where a formula leaves -1 to 1."""
+    return max(ends[0], -1.0), min(ends[1], 1.0)
 
 
 def segment_text(segment: Segment) -> tuple[str, str]:
@@ -163,7 +174,7 @@ def _needed_view(both: BothArms, names: Names, difference: MeasureView, event_is
                 high,
                 0.0,
                 False,
-                lambda v: "∞" if abs(v) < 1e-12 else fixed(abs(1 / v), 0 if abs(v) <= 0.2 else 1),
+                lambda v, _step: "∞" if abs(v) < 1e-12 else fixed(abs(1 / v), 0 if abs(v) <= 0.2 else 1),
                 f"Number needed to treat {value}, interval {interval}, no effect at infinity",
             )
         ),
@@ -186,6 +197,12 @@ def _ratio_text(low: float, high: float, decimals: int) -> str:
     return spread([fixed(low, decimals), fixed(high, decimals)])
 
 
+def _ratio_decimals(ends: tuple[float, float], least: int) -> int:
+    """Decimals that keep a positive limit from 0."""
+    figures = [v for v in ends if math.isfinite(v)]
+    return max(least, decimals_showing_sides(figures, least, (0.0, 1.0)))
+
+
 def _cannot_be_stated(estimate: Range) -> bool:
     return math.isnan(estimate.low) or math.isinf(estimate.high)
 
@@ -194,7 +211,7 @@ def _ratio_view(key: str, name: str, measure: MeasureAppraisal, beside: str, why
     low, high = hull(measure.default)
     missing = _cannot_be_stated(measure.estimate)
     figures = [v for v in (*measure.estimate, low, high) if math.isfinite(v)]
-    decimals = decimals_showing_sides(figures, ratio_decimals(figures), (1.0,))
+    decimals = decimals_showing_sides(figures, ratio_decimals(figures), (0.0, 1.0))
     value = "cannot be stated" if missing else spread([fixed(v, decimals) for v in measure.estimate])
     interval = _ratio_text(low, high, decimals)
     return MeasureView(
@@ -211,12 +228,12 @@ def _ratio_view(key: str, name: str, measure: MeasureAppraisal, beside: str, why
                 high,
                 1.0,
                 True,
-                lambda v: f"{v:g}",
+                lambda v, _step: fixed(v, step_decimals(v)),
                 f"{name} {value}, interval {interval}, no effect at 1",
             )
         ),
         others=tuple(
-            OtherInterval(method.name, _ratio_text(*hull(other), decimals))
+            OtherInterval(method.name, _ratio_text(*hull(other), _ratio_decimals(hull(other), decimals)))
             for method, other in measure.intervals
             if not method.default
         ),
@@ -247,7 +264,7 @@ def _reduction_view(measure: MeasureAppraisal, names: Names, why_not: str) -> Me
     estimate = measure.estimate
     missing = _cannot_be_stated(estimate)
     changes = [100 * (v - 1) for v in (*estimate, low, high) if math.isfinite(v)]
-    decimals = decimals_showing_sides(changes, 0, (0.0,))
+    decimals = decimals_showing_sides(changes, 0, (0.0, -100.0))
     increase = estimate.low > 1
     name = "Relative risk increase" if increase else "Relative risk reduction"
     left = spread([fixed(100 * v, decimals) for v in estimate])
@@ -257,8 +274,11 @@ def _reduction_view(measure: MeasureAppraisal, names: Names, why_not: str) -> Me
         value = value.removesuffix(" lower").removesuffix(" higher")
     interval = _change_text((low, high), decimals, bare=one_side and not missing)
 
-    def tick(ratio: float) -> str:
-        return f"{fixed(100 * (ratio - 1), 1 if 0.9 < ratio < 1.1 and ratio != 1 else 0)}%" if ratio != 1 else "0"
+    def tick(ratio: float, _step: float) -> str:
+        if ratio == 1:
+            return "0"
+        change = 100 * (ratio - 1)
+        return f"{fixed(change, decimals_showing_sides((change,), 1 if 0.9 < ratio < 1.1 else 0, (0.0, -100.0)))}%"
 
     return MeasureView(
         key="relative_risk_reduction",

@@ -8,14 +8,21 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable, Sequence
-from decimal import ROUND_HALF_UP, Decimal
+from decimal import ROUND_HALF_UP, Context, Decimal
 from fractions import Fraction
 
 MINUS = "\N{MINUS SIGN}"
 INFINITE = "∞"
 UNDEFINED = "–"
 _MOST_EXTRA = 8
-_FINEST_RATIO = 4
+_FINEST_RATIO = 8
+
+
+_EXACT = Context(prec=800)  # room for any float at any number of decimals
+
+
+def _rounded(value: float, decimals: int) -> Decimal:
+    return Decimal(repr(float(value))).quantize(Decimal(1).scaleb(-decimals), ROUND_HALF_UP, context=_EXACT)
 
 
 def fixed(value: float, decimals: int) -> str:
@@ -24,8 +31,9 @@ def fixed(value: float, decimals: int) -> str:
         return UNDEFINED
     if math.isinf(value):
         return INFINITE if value > 0 else MINUS + INFINITE
-    rounded = Decimal(repr(float(value))).quantize(Decimal(1).scaleb(-decimals), ROUND_HALF_UP)
-    text = f"{abs(rounded):,f}" if abs(rounded) >= 10_000 else f"{abs(rounded):f}"
+    rounded = _rounded(value, decimals)
+    size = rounded.copy_abs()  # abs() would cut it to the default precision
+    text = f"{size:,f}" if size >= 10_000 else f"{size:f}"
     return MINUS + text if rounded < 0 else text
 
 
@@ -33,10 +41,9 @@ def decimals_showing_sides(values: Iterable[float], decimals: int, marks: Sequen
     """Fewest decimals, `decimals` or more, at which no finite value rounds onto a mark it is not."""
     finite = [value for value in values if math.isfinite(value)]
     for extra in range(_MOST_EXTRA):
-        scale = Decimal(1).scaleb(-(decimals + extra))
         if not any(
-            value != mark
-            and Decimal(repr(float(value))).quantize(scale, ROUND_HALF_UP) == Decimal(repr(float(mark))).quantize(scale)
+            not math.isclose(value, mark, rel_tol=1e-12, abs_tol=1e-300)
+            and _rounded(value, decimals + extra) == _rounded(mark, decimals + extra)
             for value in finite
             for mark in marks
         ):
@@ -115,3 +122,16 @@ def spread(texts: Sequence[str], joiner: str = " to ") -> str:
     """Two ends as "a to b", or one where they are alike."""
     first, last = texts[0], texts[-1]
     return first if first == last else f"{first}{joiner}{last}"
+
+
+def difference_decimals(values: Sequence[float], least: int) -> int:
+    """Decimals of differences in points that stand together: `least`, or two digits of the largest estimate below 1."""
+    largest = max((abs(value) for value in values if math.isfinite(value)), default=0.0)
+    if largest == 0.0 or largest >= 1.0:
+        return least
+    return min(_MOST_EXTRA, max(least, 1 - math.floor(math.log10(largest) + 1e-9)))
+
+
+def step_decimals(step: float) -> int:
+    """Decimals that tell the ticks of an axis apart."""
+    return max(0, -math.floor(math.log10(step) + 1e-9)) if step > 0.0 else 0

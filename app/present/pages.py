@@ -6,9 +6,9 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
 from datetime import datetime
 
-from app.appraisal.fields import NUMBER_FIELDS, arm_field, arm_name_field, outcome_field
+from app.appraisal.fields import FIGURES, NUMBER_FIELDS, arm_field, arm_name_field, figure_field, outcome_field
 from app.appraisal.model import Appraisal
-from app.appraisal.sheet import CONFIDENCE_LEVELS, Sheet, TypedArm, TypedOutcome
+from app.appraisal.sheet import CONFIDENCE_LEVELS, FIGURE_LEVELS, MOST_OUTCOMES, Sheet, TypedArm, TypedFigure, TypedOutcome
 from app.errors import FieldProblem
 from app.present.numerals import fixed
 from app.present.results import ResultsView, results_view
@@ -52,11 +52,25 @@ class ArmBoxes:
 
 
 @dataclass(frozen=True, slots=True)
+class FigureRow:
+    """The boxes of one further number that the paper prints."""
+
+    key: str
+    legend: str
+    kind: ChoiceView
+    value: FieldView
+    limits: tuple[FieldView, ...]
+    level: ChoiceView | None
+    more: tuple[ChoiceView, ...]
+    label: FieldView
+    opened: bool
+
+
+@dataclass(frozen=True, slots=True)
 class TabView:
-    """A tab: an outcome, its address, and whether it is the one shown."""
+    """A tab: an outcome, and whether it is the one shown."""
 
     text: str
-    address: str
     current: bool
 
 
@@ -92,7 +106,7 @@ class SheetView:
     saved: str
     stamp: str
     tabs: tuple[TabView, ...]
-    add_outcome: str
+    can_add: bool
     title: FieldView
     reference: FieldView
     outcome_name: FieldView
@@ -106,6 +120,9 @@ class SheetView:
     also: str
     columns: tuple[str, ...]
     arms: tuple[ArmBoxes, ...]
+    figures: tuple[FigureRow, ...]
+    trust: ChoiceView | None
+    part_of: ChoiceView | None
     results: ResultsView
     cautions: tuple[str, ...]
     conflict: ConflictView | None
@@ -189,7 +206,21 @@ def _typed(sheet: Sheet, shown: int) -> tuple[str, ...]:
         numbers = [f"{spec.label.lower()} {value}" for spec in NUMBER_FIELDS if (value := getattr(arm, spec.part).strip())]
         if numbers:
             lines.append(f"{sheet.arms[j].strip() or ARMS[j].capitalize()}: {', '.join(numbers)}")
+    lines += [_typed_figure(figure) for figure in outcome.figures if figure.value.strip() or figure.low.strip()]
     return tuple(lines)
+
+
+def _typed_figure(figure: TypedFigure) -> str:
+    """A further number as a line for paper."""
+    ends = f" ({figure.low.strip()} to {figure.high.strip()}; {figure.level}%)" if figure.low.strip() else ""
+    said = [BASIS_TEXT[figure.basis]] if figure.basis != "unstated" else []
+    said += [f"in the {PLACE_TEXT[figure.place]}"] if figure.place else []
+    beside = f", {', '.join(said)}" if said else ""
+    return f"{FIGURES[figure.kind].label}: {figure.value.strip()}{ends}{beside}"
+
+
+def _first_name(sheet: Sheet) -> str:
+    return sheet.outcomes[0].name.strip() or "Outcome 1"
 
 
 def _also(sheet: Sheet, shown: int) -> str:
@@ -233,6 +264,54 @@ class _Fields:
         return ArmBoxes(ARMS[index], role, name.strip() or role, named, boxes)
 
 
+BASIS_TEXT = {
+    "unstated": "not said",
+    "crude": "crude (unadjusted)",
+    "adjusted": "adjusted",
+    "time_to_event": "time to event",
+    "clustered": "clusters allowed for",
+    "imputed": "missing filled in",
+    "matched": "matched",
+}
+PLACE_TEXT = {"": "not said", "abstract": "abstract", "text": "text", "table": "table", "figure": "figure"}
+ARM_TEXT = {"": "not said", "intervention": "intervention", "comparator": "comparator"}
+WORD_TEXT = {"": "none", "lower": "lower, fewer", "higher": "higher, more"}
+PART_TEXT = {"": "stands by itself", "component": "one component of it", "category": "one of several that exclude each other"}
+
+
+def _figure_row(fields: _Fields, outcome: int, place: int, figure: TypedFigure) -> FigureRow:
+    kind = FIGURES[figure.kind]
+
+    def name(part: str) -> str:
+        return figure_field(outcome, figure.key, part)
+
+    def choice(part: str, label: str, texts: Mapping[str, str], chosen: str) -> ChoiceView:
+        return _choice(name(part), label, texts, chosen)
+
+    more = (
+        [choice("basis", "Crude or adjusted", BASIS_TEXT, figure.basis)] if kind.interval or kind.quantity == "p_value" else []
+    )
+    more += [choice("arm", "Arm", ARM_TEXT, figure.arm)] if kind.per_arm else []
+    more += [choice("word", "Word of direction", WORD_TEXT, figure.word)] if kind.interval else []
+    more.append(choice("place", "Printed in", PLACE_TEXT, figure.place))
+    limits = (
+        tuple(fields.box(name(part), label, getattr(figure, part)) for part, label in (("low", "From"), ("high", "To")))
+        if kind.interval
+        else ()
+    )
+    return FigureRow(
+        key=figure.key,
+        legend=f"Further number {place + 1}",
+        kind=choice("kind", "The paper also prints", {key: k.label for key, k in FIGURES.items()}, figure.kind),
+        value=fields.box(name("value"), "As printed", figure.value, kind.example),
+        limits=limits,
+        level=choice("level", "Level", {level: f"{level}%" for level in FIGURE_LEVELS}, figure.level) if limits else None,
+        more=tuple(more),
+        label=fields.box(name("label"), "What the paper calls it", figure.label),
+        opened=kind.per_arm or figure.basis != "unstated" or bool(figure.word or figure.place or figure.label),
+    )
+
+
 def _choice(name: str, label: str, texts: Mapping[str, str], chosen: str) -> ChoiceView:
     return ChoiceView(name, label, tuple((value, text, value == chosen) for value, text in texts.items()))
 
@@ -257,10 +336,8 @@ def sheet_view(
     """The whole page of one sheet, showing one of its outcomes."""
     fields = _Fields(problems, needs, read_as)
     outcome = sheet.outcomes[shown]
-    tabs = tuple(
-        TabView(o.name.strip() or f"Outcome {i + 1}", f"/sheet/{sheet_id}?outcome={i}", i == shown)
-        for i, o in enumerate(sheet.outcomes)
-    )
+    results = results_view(appraisal.outcomes[shown], names_of(sheet, shown))
+    tabs = tuple(TabView(o.name.strip() or f"Outcome {i + 1}", i == shown) for i, o in enumerate(sheet.outcomes))
     return SheetView(
         id=sheet_id,
         revision=revision,
@@ -271,7 +348,7 @@ def sheet_view(
         saved="Nothing typed yet" if saved is None else f"Saved {time_text(saved, now)}, on this computer only",
         stamp="" if saved is None else f"Saved {saved.day} {saved:%B %Y, %H:%M}; Armslength {version}",
         tabs=tabs,
-        add_outcome="" if saved is None else f"/sheet/{sheet_id}/outcome",
+        can_add=saved is not None and len(sheet.outcomes) < MOST_OUTCOMES,
         title=fields.box("title", "Title of the paper", sheet.title, "Title of the paper"),
         reference=fields.box("reference", "Where it is from", sheet.reference, "Journal and year, or where it is from"),
         outcome_name=replace(
@@ -290,7 +367,14 @@ def sheet_view(
         also=_also(sheet, shown),
         columns=tuple(spec.label for spec in NUMBER_FIELDS),
         arms=tuple(fields.arm(j, shown, sheet.arms[j], typed) for j, typed in enumerate(outcome.arms)),
-        results=results_view(appraisal.outcomes[shown], names_of(sheet, shown)),
+        figures=tuple(_figure_row(fields, shown, k, figure) for k, figure in enumerate(outcome.figures)),
+        trust=_choice(outcome_field(shown, "trust"), "Go by", {v: t for v, t, _ in results.numbers.trust}, outcome.trust)
+        if results.numbers.trust
+        else None,
+        part_of=_choice(outcome_field(shown, "part_of"), f"Beside “{_first_name(sheet)}” it is", PART_TEXT, outcome.part_of)
+        if shown
+        else None,
+        results=results,
         cautions=CAUTIONS,
         conflict=conflict,
         version=version,

@@ -125,7 +125,8 @@ def _anything_from(both: BothArms) -> str:
     result = both.measures["risk_difference"]
     ends: Sequence[float] = (result.default.low.low, result.default.high.high)
     decimals = per_1000_decimals(result.estimate, ends)
-    return f"anything from {signed_spread(ends, sizes(ends, 1000.0, decimals), FEWER_MORE)} in every 1000"
+    told = signed_spread(ends, sizes(ends, 1000.0, decimals), FEWER_MORE)
+    return f"{'anything from ' if ' to ' in told else ''}{told} in every 1000"
 
 
 def _settled(both: BothArms) -> bool:
@@ -141,6 +142,9 @@ def _point(both: BothArms, names: Names, given: OutcomeInput) -> str:
     word = "fewer" if fewer else "more"
     rather = f"with {names.intervention} rather than {names.comparator}"
     if result.rounded is None:
+        if 0.0 in estimate:
+            side = "fewer" if estimate.low < 0 else "more"
+            return f"the tables that fit have equally many or {side} with {names.counted} {rather}"
         return "the tables that fit differ in direction"
     if any(r.decimals for r in result.rounded):
         count = spread(sorted(sizes(estimate, 100.0, 0), key=float))

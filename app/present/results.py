@@ -9,7 +9,8 @@ from dataclasses import dataclass
 from app.appraisal.model import BothArms, OutcomeAppraisal, Range, RiskAppraisal
 from app.measures.registry import NoDifferenceTest
 from app.present.effects import MeasureView, difference_views, hull, percent_spread, relative_views
-from app.present.numerals import UNDEFINED, fixed, p_value, people, percent_decimals, spread
+from app.present.numbers import NumbersView, numbers_view
+from app.present.numerals import UNDEFINED, decimals_showing_sides, fixed, p_value, people, percent_decimals, spread
 from app.present.people import PeopleView, people_view
 from app.present.wording import Names, NoteText, note_text
 
@@ -56,13 +57,15 @@ class ResultsView:
     p_values: PView | None
     people: PeopleView | None
     notes: tuple[NoteText, ...]
+    numbers: NumbersView
 
 
 def _risk_decimals(arms: Sequence[RiskAppraisal | None]) -> int:
     """Decimals shared by all risks of the table: one, or two digits of the smallest that is not 0."""
     ends = [end for arm in arms if arm for end in (*arm.estimate, *hull(arm.intervals[0][1])) if end > 0]
-    smallest = 100.0 * min(ends, default=1.0)
-    return min(4, max(1, 1 - math.floor(math.log10(smallest)))) if smallest < 0.1 else 1
+    smallest = 100.0 * min((end for arm in arms if arm for end in arm.estimate if end > 0), default=1.0)
+    least = min(8, max(1, 1 - math.floor(math.log10(smallest)))) if smallest < 0.1 else 1
+    return decimals_showing_sides([100.0 * end for end in ends], least, (0.0, 100.0))
 
 
 def _arm_row(arm: RiskAppraisal, key: str, name: str, decimals: int, shows_risk: bool) -> ArmRow:
@@ -80,18 +83,23 @@ def _arm_row(arm: RiskAppraisal, key: str, name: str, decimals: int, shows_risk:
 
 def _summary(outcome: OutcomeAppraisal, names: Names) -> str:
     """How many tables fit, or why none is shown yet."""
-    slugs = {note.slug for note in outcome.notes}
     if outcome.both is None:
         lost = [note.evidence["arm"] for note in outcome.notes if note.slug == "no_count_fits"]
         return (
             f"{names.start(lost[0])}: nothing fits what is typed; see the message at that arm." if lost else "One arm so far."
         )
     count = outcome.both.fits.count
-    if "contradict_each_other" in slugs:
-        return "No table fits everything typed. The figures follow the counts."
+    if outcome.check.choices:
+        trusted = "percentages" if outcome.input.trust == "percentages" else "counts"
+        return f"No table fits everything typed. The figures follow the {trusted}."
+    start = "No table fits everything typed. " if outcome.check.set_aside else ""
     if count == 1:
-        return "One table fits."
-    return f"{people(count)} tables fit. Estimates show the range over all of them, intervals the widest over all."
+        return f"{start}One table fits {'the rest' if start else ''}".strip() + "."
+    rest = "the rest" if start else ""
+    return (
+        f"{start}{people(count)} tables fit {rest}".strip()
+        + ". Estimates show the range over all of them, intervals the widest over all."
+    )
 
 
 def _tables(outcome: OutcomeAppraisal, names: Names) -> TablesView | None:
@@ -112,25 +120,27 @@ def _tables(outcome: OutcomeAppraisal, names: Names) -> TablesView | None:
     return TablesView(_summary(outcome, names), in_words, level, by, rows)
 
 
-def _p_text(test: NoDifferenceTest, found: Range) -> str:
+def _p_text(test: NoDifferenceTest, found: Range, *, several: bool) -> str:
     if math.isnan(found.low):
-        return f"P cannot be computed by {test.name}"
+        return f"P cannot be computed by {test.name}{' in some of the tables' if several else ''}"
     return f"P{spread([p_value(found.low), p_value(found.high)]).replace(' to =', ' to ')} by {test.name}"
 
 
 def _p_values(both: BothArms) -> PView:
     (first, found), *others = both.tests
     agrees = "" if math.isnan(found.low) else ", the test that agrees with the intervals"
-    return PView(_p_text(first, found) + agrees, tuple(_p_text(*other) for other in others))
+    several = both.fits.count > 1
+    return PView(_p_text(first, found, several=several) + agrees, tuple(_p_text(*other, several=several) for other in others))
 
 
 def results_view(outcome: OutcomeAppraisal, names: Names) -> ResultsView:
     """All panels of one outcome."""
     notes = tuple(note_text(note, names) for note in outcome.notes)
+    numbers = numbers_view(outcome.check, outcome.input.trust, names)
     tables = _tables(outcome, names)
     both = outcome.both
     if both is None:
-        return ResultsView(tables, (), (), None, None, notes)
+        return ResultsView(tables, (), (), None, None, notes, numbers)
     given = outcome.input
     decimals = percent_decimals(min(run.total for arm in (both.intervention, both.comparator) for run in arm.fits.runs))
     no_risk = given.design == "case_control"
@@ -141,4 +151,5 @@ def results_view(outcome: OutcomeAppraisal, names: Names) -> ResultsView:
         p_values=_p_values(both),
         people=None if no_risk else people_view(both, names, given),
         notes=notes,
+        numbers=numbers,
     )

@@ -350,6 +350,22 @@ _NOTES: Mapping[str, str] = {
 }
 
 
+NARROW_TEXT: Mapping[str, str] = {
+    key: f"To narrow the tables most, add {what}."
+    for key, what in {
+        "events_intervention": "how many had the event in the intervention arm",
+        "events_comparator": "how many had the event in the comparator arm",
+        "total_intervention": "how many were analysed in the intervention arm",
+        "total_comparator": "how many were analysed in the comparator arm",
+        "risk_intervention": "the percentage of the intervention arm with one decimal",
+        "risk_comparator": "the percentage of the comparator arm with one decimal",
+        "risk_ratio": "the risk ratio",
+        "odds_ratio": "the odds ratio",
+        "risk_difference": "the risk difference",
+    }.items()
+}
+"""Which further printed figure would tell the tables apart, by the name of the figure."""
+
 QUESTIONS: Mapping[str, str] = {
     "crude_or_adjusted": "Is the estimate adjusted, stratified or from a model? It fits the counts only if it is.",
     "which_test_gave_p": "Which test gave the P? It and the interval stand on different sides of 0.05.",

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import unicodedata
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
@@ -33,6 +34,16 @@ DIRECTIONS: Mapping[EventIs, Mapping[str, str]] = {
 _LEADING = re.compile(r"^(?:at|within|by|over|after|in|during)\s+", re.IGNORECASE)
 
 
+_TURNING = frozenset("\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069\u200e\u200f\u061c")
+
+
+def isolated(text: str) -> str:
+    """A typed name as it stands within a sentence: one that runs right to left cannot turn what is around it."""
+    plain = "".join(character for character in text if character not in _TURNING)
+    turns = any(unicodedata.bidirectional(character) in ("R", "AL", "AN") for character in plain)
+    return f"\u2068{plain}\u2069" if turns else plain
+
+
 @dataclass(frozen=True, slots=True)
 class Names:
     """How the sheet names things, with plain words where nothing is typed."""
@@ -42,6 +53,10 @@ class Names:
     counted: str
     horizon: str
     fixed_time: bool
+
+    def __post_init__(self) -> None:
+        for part in ("intervention", "comparator", "counted", "horizon"):
+            object.__setattr__(self, part, isolated(getattr(self, part)))
 
     def arm(self, key: object) -> str:
         """The name of an arm by its key."""
@@ -105,16 +120,6 @@ def _people_of(run: Run) -> str:
     return spread([people(run.first), people(run.last)])
 
 
-def _contradict(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
-    run = evidence["run"]
-    recomputed = percentages([run.first / run.total], 2)[0]
-    return (
-        "Counts and percentage contradict each other",
-        f"{names.start(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%. Check what was "
-        "typed first. Neither is taken to be right; the figures here follow the counts.",
-    )
-
-
 def _no_count_fits(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
     total = evidence["total"]
     if total is None:
@@ -138,16 +143,6 @@ def _truncated(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
         "More counts if digits were cut off",
         f"{names.start(evidence['arm'])}: {_people_of(evidence['run'])} of {people(evidence['total'])} would print so only "
         "if further digits were cut off instead of rounded. Not used here.",
-    )
-
-
-def _last_digit(evidence: Mapping[str, Any], names: Names) -> tuple[str, str]:
-    run = evidence["run"]
-    recomputed = percentages([run.first / run.total], 2)[0]
-    return (
-        "Last digit differs",
-        f"{names.start(evidence['arm'])}: {people(run.first)} of {people(run.total)} is {recomputed}%, one unit of the "
-        "printed digit away. Printed percentages often are.",
     )
 
 
@@ -190,10 +185,8 @@ def _fixed(head: str, body: str) -> Callable[[Mapping[str, Any], Names], tuple[s
 
 
 _NOTES: dict[str, Callable[[Mapping[str, Any], Names], tuple[str, str]]] = {
-    "contradict_each_other": _contradict,
     "no_count_fits": _no_count_fits,
     "more_if_truncated": _truncated,
-    "last_digit_differs": _last_digit,
     "naive_follow_up": _naive,
     "odds_part_from_risk": _odds_part,
     "too_many_tables": lambda evidence, _names: (

@@ -62,6 +62,7 @@ _PARTS: dict[str, Fraction] = {
     "points": Fraction(1, 100),
     "proportion": Fraction(1),
     "people": Fraction(1),
+    "person_years": Fraction(1),
 }
 
 

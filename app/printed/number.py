@@ -124,8 +124,8 @@ def read_number(text: str, kind: Kind) -> PrintedNumber:
         whole = body if decimals is None else body[: len(body) - len(decimals) - 1]
         if group is not None:
             whole = whole.replace(group, "")
-    if kind == "count" and decimals is not None:
-        raise PrintedProblem("count_with_decimals", text)
+    if kind == "count" and (decimals is not None or (group is not None and body.startswith("0"))):
+        raise PrintedProblem("count_with_decimals", text)  # 0.110 is no group of thousands
     value = Decimal(f"{whole or '0'}.{decimals}") if decimals else Decimal(whole or "0")
     value = (-value if negative else value).scaleb(power)
     return PrintedNumber(text, value, len(decimals or "") - power, grouped=group is not None)

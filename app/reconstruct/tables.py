@@ -8,9 +8,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from app.measures.fourfold import Fourfold
-from app.reconstruct.arm import ArmFits
+from app.printed.claims import Arm
+from app.reconstruct.arm import ArmFits, Run
 
-MOST_EVALUATED = 20_000
+MOST_EVALUATED = 4_000
 """Most tables that every measure is computed on; above it only the ends of each run are."""
 
 
@@ -59,3 +60,43 @@ def tables_that_fit(intervention: ArmFits, comparator: ArmFits) -> Fits:
         listed=listed,
         complete=complete,
     )
+
+
+MOST_JOINED = 1_500
+"""Most tables of a joint set that every measure is computed on: an even spread, and the extremes of each cell and measure."""
+
+
+def joined(found: Fourfold, count: int, *, complete: bool) -> tuple[ArmFits, ArmFits, Fits]:
+    """Tables that fit both arms' claims together, as what each arm allows and as a set to compute on."""
+    tables = _spread(found)
+    middle = tables.events_intervention.size // 2
+    cells = [int(x[middle]) for x in _columns(tables)]
+    fits = Fits(count, tables, Fourfold(*cells), listed=tables.events_intervention.size == count, complete=complete)
+    return _arm("intervention", found), _arm("comparator", found), fits
+
+
+def _columns(tables: Fourfold) -> tuple[NDArray[np.int64], ...]:
+    return tables.events_intervention, tables.total_intervention, tables.events_comparator, tables.total_comparator
+
+
+def _spread(found: Fourfold) -> Fourfold:
+    size = found.events_intervention.size
+    if size <= MOST_JOINED:
+        return found
+    a, n1, c, n2 = found.floats()
+    with np.errstate(divide="ignore", invalid="ignore"):
+        measures = (a, n1, c, n2, a / n1, c / n2, a / n1 - c / n2, np.nan_to_num(a * n2 / (c * n1), nan=1.0, posinf=1e18))
+    ends = [int(pick(values)) for values in measures for pick in (np.argmin, np.argmax)]
+    keep = np.unique([*np.linspace(0, size - 1, MOST_JOINED).astype(np.int64), *ends])
+    return Fourfold(*(column[keep] for column in _columns(found)))
+
+
+def _arm(arm: Arm, found: Fourfold) -> ArmFits:
+    columns = _columns(found)
+    events, totals = columns[:2] if arm == "intervention" else columns[2:]
+    sizes = np.unique(totals)
+    runs = tuple(Run(int(n), int(events[totals == n].min()), int(events[totals == n].max())) for n in sizes[:_MOST_SIZES])
+    return ArmFits(arm, "fits", runs, total=int(sizes[0]) if sizes.size == 1 else None)
+
+
+_MOST_SIZES = 2_000

@@ -9,6 +9,7 @@ from fastapi import FastAPI, Request
 from fastapi.exceptions import RequestValidationError
 from fastapi.responses import HTMLResponse
 from starlette.exceptions import HTTPException
+from starlette.requests import ClientDisconnect
 from starlette.responses import Response
 
 from app import __version__
@@ -26,13 +27,14 @@ _SENTENCES: dict[str, tuple[str, str]] = {
     "body_too_large": ("More was sent than this program takes at once.", "Shorten it."),
     "not_found": ("There is nothing at this address.", "Check the address, or go back to Papers."),
     "method_not_allowed": ("This address does not answer that kind of request.", "See /openapi.json for what it takes."),
+    "not_a_form": ("A sheet is saved from its form.", "Send the form of the page."),
     "bad_request": ("The request could not be read.", "Check it and send it again."),
     "program_fault": (
         "The program met a fault of its own (number {number}); what was saved before is safe.",
         "The window where it runs shows the same number.",
     ),
 }
-_BY_STATUS = {404: "not_found", 405: "method_not_allowed", 413: "body_too_large"}
+_BY_STATUS = {404: "not_found", 405: "method_not_allowed", 413: "body_too_large", 415: "not_a_form"}
 _TITLES = {404: "Not found", 413: "Too much at once", 500: "A fault of the program", 503: "The shelf is busy"}
 
 
@@ -76,6 +78,10 @@ def install(app: FastAPI) -> None:
     @app.exception_handler(RequestValidationError)
     def validation(request: Request, problem: RequestValidationError) -> Response:
         return refusal(request, 422, "bad_request")
+
+    @app.exception_handler(ClientDisconnect)
+    def left(request: Request, problem: ClientDisconnect) -> Response:
+        return Response(status_code=400)  # nobody is there to read it
 
     @app.exception_handler(Exception)
     def fault(request: Request, problem: Exception) -> Response:

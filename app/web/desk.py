@@ -13,7 +13,7 @@ from pathlib import Path
 
 from app import __version__
 from app.appraisal.run import appraise
-from app.appraisal.sheet import Sheet, TypedOutcome
+from app.appraisal.sheet import MOST_OUTCOMES, Sheet
 from app.errors import NotOnShelf, SaveConflict
 from app.intake.sheet import gather, needs, sheet_from_form
 from app.present.pages import ConflictView, HomeView, SheetView, conflict_view, home_view, sheet_view, shelf_line
@@ -51,8 +51,10 @@ class Posted:
 
     @property
     def shown(self) -> int:
-        """The outcome the page shows."""
-        text = self.fields.get("outcome", "0")
+        """The outcome the page is to show: the one asked for, the one just added, or the same."""
+        if "add-outcome" in self.fields:
+            return MOST_OUTCOMES
+        text = self.fields.get("show", self.fields.get("outcome", "0"))
         return int(text) if text.isascii() and text.isdigit() and len(text) < 4 else 0
 
 
@@ -132,19 +134,11 @@ class Desk:
             kept = self._keep(writer, sheet, posted.revision, writer)
             conflict = conflict_view(sheet_id, writer, met.saved, self._now())
         view = self._view(sheet, sheet_id, posted.shown, kept=kept, writer=writer, own_page=True, conflict=conflict)
-        return view, conflict is not None
+        # A page in conflict stays as old as it was: its next save is set aside like this one.
+        return (replace(view, revision=posted.revision) if conflict else view), conflict is not None
 
     def _keep(self, sheet_id: str, sheet: Sheet, revision: int, writer: str) -> Kept:
         return self.shelf.save(sheet_id, sheet, revision, writer, now=self._now(), version=__version__)
-
-    def add_outcome(self, sheet_id: str, posted: Posted) -> int:
-        """Add an empty outcome with the same time and follow-up, and give back its place."""
-        kept = self._load(sheet_id)
-        last = kept.sheet.outcomes[-1]
-        added = TypedOutcome(horizon=last.horizon, follow_up=last.follow_up)
-        sheet = replace(kept.sheet, outcomes=(*kept.sheet.outcomes, added))
-        self._keep(sheet_id, sheet, kept.revision, posted.writer)
-        return len(kept.sheet.outcomes)
 
     def add_example(self, sheet: Sheet) -> str:
         """Put an invented example on the shelf and give back its address."""

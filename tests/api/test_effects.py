@@ -256,3 +256,21 @@ def test_any_json_is_taken_or_refused_with_reasons(body: Any) -> None:
         assert all(problem.message and problem.hint and problem.slug for problem in refused.problems)
     else:
         assert not math.isnan(given_input.confidence_level)
+
+
+@pytest.mark.parametrize(
+    ("change", "field"),
+    [({"per": "banana"}, "per"), ({"missing": {"intervention": -1}}, "missing.intervention")],
+)
+def test_what_changes_no_figure_is_still_read(client: TestClient, change: dict[str, object], field: str) -> None:
+    body = {"intervention": {"events": 46, "total": 418}, "comparator": {"events": 67, "total": 409}}
+    answer = client.post("/api/v1/effects", json={**body, **change})
+    assert answer.status_code == 422
+    assert [problem["field"] for problem in answer.json()["problems"]] == [field]
+
+
+def test_a_name_given_twice_is_refused(client: TestClient) -> None:
+    text = '{"intervention":{"events":46,"events":4,"total":418},"comparator":{"events":67,"total":409}}'
+    answer = client.post("/api/v1/effects", content=text, headers={"content-type": "application/json"})
+    assert answer.status_code == 422
+    assert answer.json()["problems"][0]["slug"] == "not_json"

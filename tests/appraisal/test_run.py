@@ -103,5 +103,6 @@ def test_odds_are_noted_where_they_part() -> None:
 
 def test_contradiction_within_an_arm_is_a_note_not_an_error() -> None:
     outcome = one({"events": "46", "total": "418", "risk": "12.0"}, {"events": "67", "total": "409"})
-    assert slugs(outcome)[0] == "contradict_each_other"
+    assert [j.finding for j in outcome.check.judgements[:3]] == ["contradict_each_other"] * 3
+    assert [choice.slug for choice in outcome.check.choices] == ["if_counts", "if_percentages"]
     assert outcome.both is not None

@@ -59,7 +59,7 @@ def test_array_has_its_words() -> None:
 
 
 def _marks(low: float, high: float, *, log: bool) -> Marks:
-    return Marks((0.8, 0.8), low, high, 1.0 if log else 0.0, log, lambda v: f"{v:g}", "words")
+    return Marks((0.8, 0.8), low, high, 1.0 if log else 0.0, log, lambda v, _step: f"{v:g}", "words")
 
 
 def _x(svg: str, name: str) -> tuple[float, float]:
@@ -91,7 +91,7 @@ def test_undefined_interval_draws_no_limits() -> None:
 @given(st.floats(1e-5, 1e5), st.floats(1e-5, 1e5), st.floats(1e-5, 1e5), st.booleans())
 def test_ticks_never_overprint(a: float, b: float, c: float, log: bool) -> None:
     low, estimate, high = sorted((a, b, c))
-    marks = Marks((estimate, estimate), low, high, 1.0 if log else 0.0, log, lambda v: f"{v:g}", "words")
+    marks = Marks((estimate, estimate), low, high, 1.0 if log else 0.0, log, lambda v, _step: f"{v:g}", "words")
     svg = BeautifulSoup(str(strip(marks)), "html.parser")
     places = sorted(float(str(text["x"])) for text in svg.select("text"))
     assert places

@@ -284,12 +284,6 @@ def test_signed_spread(values: tuple[float, float], texts: tuple[str, str], expe
 
 
 EVIDENCE: dict[str, tuple[dict[str, object], str, str]] = {
-    "contradict_each_other": (
-        {"arm": "intervention", "total": 418, "run": Run(418, 46, 46)},
-        "Counts and percentage contradict each other",
-        "Compression review: 46 of 418 is 11.00%. Check what was typed first. Neither is taken to be right; the figures "
-        "here follow the counts.",
-    ),
     "no_count_fits": (
         {"arm": "comparator", "total": 40, "nearest": (4, 5), "other_totals": (39, 44), "if_truncated": None},
         "No count fits",
@@ -300,11 +294,6 @@ EVIDENCE: dict[str, tuple[dict[str, object], str, str]] = {
         {"arm": "comparator", "total": 409, "run": Run(409, 68, 69)},
         "More counts if digits were cut off",
         "Usual care: 68 to 69 of 409 would print so only if further digits were cut off instead of rounded. Not used here.",
-    ),
-    "last_digit_differs": (
-        {"arm": "intervention", "total": 69, "run": Run(69, 1, 1)},
-        "Last digit differs",
-        "Compression review: 1 of 69 is 1.45%, one unit of the printed digit away. Printed percentages often are.",
     ),
     "naive_follow_up": (
         {"follow_up": "varies"},

@@ -85,7 +85,7 @@ def test_fragment_is_the_same_as_the_page(client: TestClient) -> None:
 def test_example_opens_with_one_click(client: TestClient) -> None:
     soup = soup_of(client.post("/example"))
     assert text(soup, ".invented") == "Invented example: no such trial was done."
-    assert [tab.get_text() for tab in soup.select(".tabs a")] == ["Recurrence", "Skin irritation"]
+    assert [tab.get_text() for tab in soup.select(".tabs button")] == ["Recurrence", "Skin irritation", "Add an outcome"]
     assert text(soup, "#measure-number_needed_to_treat .value") == "19 to benefit"
 
 
@@ -94,9 +94,11 @@ def test_outcomes_are_tabs_and_can_be_added(client: TestClient) -> None:
     address = str(first.url).partition("?")[0]
     second = soup_of(client.get(f"{address}?outcome=1"))
     assert text(second, "#measure-number_needed_to_treat .value").endswith("to harm")
-    added = client.post(f"{address}/outcome", data={"writer": ONE})
+    action, fields = form_of(second)
+    added = client.post(action, data={**fields, "title": "Typed before adding", "add-outcome": "1"})
     assert str(added.url).endswith("?outcome=2")
     soup = soup_of(added)
+    assert form_of(soup)[1]["title"] == "Typed before adding"
     assert form_of(soup)[1]["outcome-2-horizon"] == "12 months"
     assert text(soup, ".tabs .on") == "Outcome 3"
 
@@ -110,7 +112,7 @@ def test_bad_box_keeps_its_text_and_the_rest_alive(client: TestClient) -> None:
     assert box is not None
     assert (box["value"], box["aria-invalid"]) == ("4<b>6", "true")
     assert text(soup, f"#{box['aria-describedby']}") == "With the event: “4<b>6” is not a number. Type digits, such as 46."
-    assert text(soup, ".summary") == "One arm so far."
+    assert text(soup, ".summary") == "No table fits everything typed. One table fits the rest."
 
 
 @pytest.mark.parametrize(
@@ -171,3 +173,90 @@ def test_pages_are_not_kept_in_caches(client: TestClient) -> None:
     answer = client.post("/example")
     assert answer.headers["Cache-Control"] == "no-store"
     assert "HX-Request" in answer.headers["Vary"]
+
+
+def test_a_tab_saves_what_was_typed_before_it_is_shown(client: TestClient) -> None:
+    action, fields = form_of(soup_of(client.post("/example")))
+    shown = client.post(action, data={**fields, "title": "Typed, then another tab", "show": "1"})
+    assert str(shown.url).endswith("?outcome=1")
+    assert form_of(soup_of(shown))[1]["title"] == "Typed, then another tab"
+
+
+def test_a_page_in_conflict_never_overwrites_the_other(client: TestClient) -> None:
+    """Also without script, where the answered page is posted again as it stands."""
+    action, fields = form_of(soup_of(client.post("/example")))
+    client.post(action, data={**fields, "title": "From the first window"})
+    mine = {**fields, "writer": "b" * 12, "title": "From the second window"}
+    for _ in range(3):
+        answer = client.post(action, data=mine)
+        assert answer.status_code == 409
+        mine = {**form_of(soup_of(answer))[1], "title": "From the second window"}
+    assert form_of(soup_of(client.get(action)))[1]["title"] == "From the first window"
+
+
+def test_only_a_form_is_saved(client: TestClient) -> None:
+    answer = client.post("/sheet/0123456789ab", json={"title": "no"})
+    assert answer.status_code == 415
+    assert client.get("/sheet/0123456789ab").status_code == 404
+
+
+def test_figures_grow_only_when_asked_and_are_judged(client: TestClient) -> None:
+    action, fields = form_of(soup_of(client.post("/example")))
+    assert [name for name in fields if name.endswith("-value")] == [f"outcome-0-figure-{k}-value" for k in (1, 2, 3)]
+    soup = soup_of(client.post(action, data={**fields, "add-figure": "risk_ratio"}))
+    fields = {**form_of(soup)[1], "outcome-0-figure-4-kind": "number_needed_to_treat", "outcome-0-figure-4-value": "19"}
+    soup = soup_of(client.post(action, data=fields))
+    notes = {text_of(note.select_one(".what")): text_of(note.select_one(".verdict")) for note in soup.select(".number-note")}
+    assert notes == {
+        "Relative reduction": "↷ another reading",
+        "Risk ratio": "✓ agrees",
+        "Number needed to treat": "✓ agrees",
+        "P": "✓ agrees",
+        "Counts and percentages": "✓ agree",
+    }
+    assert text(soup, ".tally") == ("Seven numbers are consistent with each other; one agrees only under another reading.")
+    removed = soup_of(client.post(action, data={**form_of(soup)[1], "remove-figure": "2"}))
+    assert [name for name in form_of(removed)[1] if name.endswith("-value")] == [
+        f"outcome-0-figure-{k}-value" for k in (1, 3, 4)
+    ]
+
+
+def test_a_figure_that_cannot_be_read_says_so_beside_its_box(client: TestClient) -> None:
+    action, fields = form_of(soup_of(client.post("/example")))
+    wrong = {**fields, "outcome-0-figure-1-value": "0.67 (0.47", "outcome-0-figure-1-low": "2", "outcome-0-figure-1-high": "1"}
+    soup = soup_of(client.post(action, data=wrong))
+    assert (
+        text(soup, "#outcome-0-figure-1-value-says")
+        == "“0.67 (0.47” holds more than one number. Type one number here, such as 0.67, and the others in their own boxes."
+    )
+    assert (
+        text(soup, "#outcome-0-figure-1-low-says")
+        == "The lower limit 2 is above the upper limit 1. Check both limits and their signs."
+    )
+
+
+def test_counts_or_percentages_is_the_readers_choice(client: TestClient) -> None:
+    action, fields = form_of(soup_of(client.post("/example")))
+    for key in ("1", "2", "3"):
+        fields = {
+            **fields,
+            f"outcome-0-figure-{key}-value": "",
+            f"outcome-0-figure-{key}-low": "",
+            f"outcome-0-figure-{key}-high": "",
+        }
+    soup = soup_of(client.post(action, data={**fields, "outcome-0-arm-0-percentage": "14.0"}))
+    assert text(soup, ".summary") == "No table fits everything typed. The figures follow the counts."
+    assert text(soup, ".contradiction p") == (
+        "Compression review: counts and percentage contradict each other. Check what was typed first."
+    )
+    soup = soup_of(client.post(action, data={**form_of(soup)[1], "outcome-0-trust": "percentages"}))
+    assert text(soup, ".summary") == (
+        "No table fits everything typed. 2 tables fit the rest. Estimates show the range over all of them, intervals the "
+        "widest over all."
+    )
+    assert text(soup, "#outcome-0-trust option[selected]") == "if the percentages are right"
+
+
+def text_of(tag: object) -> str:
+    """The words of a tag, blanks closed up."""
+    return " ".join(tag.get_text(" ").split())  # type: ignore[attr-defined]

@@ -20,7 +20,7 @@ _LOG_STEPS = (1.0, 2.0, 5.0)
 class Marks:
     """What a strip shows, on the scale of the measure: an estimate (or its range) and two limits.
 
-    `no_effect` is where no effect lies; `label` writes a tick.
+    `no_effect` is where no effect lies; `label` writes a tick from its value and the step between ticks.
     """
 
     estimate: tuple[float, float]
@@ -28,7 +28,7 @@ class Marks:
     high: float
     no_effect: float
     log: bool
-    label: Callable[[float], str]
+    label: Callable[[float, float], str]
     description: str
 
 
@@ -88,6 +88,7 @@ def strip(marks: Marks) -> Markup:
 
 def _ticks(marks: Marks, first: float, last: float, x: Callable[[float], float], zero: float) -> str:
     values = _log_ticks(first, last) if marks.log else _linear_ticks(first, last)
+    step = values[1] - values[0] if len(values) > 1 else last - first
     position = x(marks.no_effect)
     parts = [f'<line class="no-effect" x1="{position:.1f}" x2="{position:.1f}" y1="2" y2="22"/>']
     taken: list[float] = []
@@ -96,7 +97,7 @@ def _ticks(marks: Marks, first: float, last: float, x: Callable[[float], float],
         if any(abs(here - other) < _CLOSEST for other in taken):
             continue
         taken.append(here)
-        label = Markup.escape(marks.label(value))
+        label = Markup.escape(marks.label(value, step))
         parts.append(f'<text x="{here:.1f}" y="36" text-anchor="middle">{label}</text>')
         parts.append(f'<line class="tick" x1="{here:.1f}" x2="{here:.1f}" y1="{_LINE}" y2="{_LINE + 4}"/>')
     return "".join(parts)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Annotated
 
-from fastapi import APIRouter, Depends, Request
+from fastapi import APIRouter, Depends, HTTPException, Request
 from fastapi.responses import HTMLResponse, RedirectResponse, Response
 
 from app.present.templating import render
@@ -16,6 +16,9 @@ router = APIRouter(include_in_schema=False)
 
 async def posted(request: Request) -> Posted:
     """The posted form: text fields only, the last of a name, lone surrogates replaced."""
+    kind = request.headers.get("content-type", "").partition(";")[0].strip().lower()
+    if kind not in ("application/x-www-form-urlencoded", "multipart/form-data"):
+        raise HTTPException(415)
     form = await request.form()
     texts = {name: value for name, value in form.multi_items() if isinstance(value, str)}
     return Posted({name: value.encode("utf-8", "replace").decode("utf-8") for name, value in texts.items()})
@@ -39,10 +42,3 @@ def sheet_save(request: Request, sheet_id: str, form: Annotated[Posted, Depends(
     if conflict:
         return HTMLResponse(render("sheet/sheet.html", view), status, headers={"Cache-Control": "no-store"})
     return RedirectResponse(f"/sheet/{sheet_id}?outcome={view.shown}", status_code=303)
-
-
-@router.post("/sheet/{sheet_id}/outcome")
-def sheet_add_outcome(request: Request, sheet_id: str, form: Annotated[Posted, Depends(posted)]) -> RedirectResponse:
-    """Add an outcome and show it."""
-    added = request.app.state.desk.add_outcome(sheet_id, form)
-    return RedirectResponse(f"/sheet/{sheet_id}?outcome={added}", status_code=303)
