@@ -54,11 +54,20 @@ class TotalsShape(Shape):
     comparator: Total | None = None
 
 
+class BelongingShape(Shape):
+    """Outcomes that are components of a whole, or groups of which a person is in one, by name."""
+
+    kind: Literal["components", "categories"]
+    whole: str | None = None
+    parts: Annotated[list[str], Field(min_length=1)]
+
+
 class CheckRequest(Shape):
     """The printed numbers of a paper."""
 
     claims: Annotated[list[ClaimShape], Field(min_length=1, max_length=400)]
     totals: TotalsShape | None = None
+    belongings: Annotated[list[BelongingShape], Field(min_length=1, max_length=60)] | None = None
 
 
 Ends = list[Number]

@@ -6,10 +6,11 @@ import math
 from typing import Any
 
 from app.api.answers import Json, versioned
-from app.intake.claims import NamedOutcome
+from app.intake.claims import CheckInput, NamedOutcome
 from app.present.verdicts import QUESTIONS, because
 from app.printed.claims import Claim, PrintedInterval
 from app.printed.number import PrintedNumber
+from app.reconstruct.across import together
 from app.reconstruct.judge import check_outcome
 from app.reconstruct.narrowing import ranges
 from app.reconstruct.verdict import Choice, Judgement, OutcomeCheck, Recomputed, Spread, Tables
@@ -131,9 +132,8 @@ def _choice(choice: Choice) -> Json:
     }
 
 
-def _outcome(given: NamedOutcome) -> tuple[Json, tuple[str, ...]]:
-    check = check_outcome(given.claims)
-    answer: Json = {
+def _outcome(given: NamedOutcome, check: OutcomeCheck) -> Json:
+    return {
         "name": given.name,
         "horizon": given.horizon,
         "claims": [_judged(judged, check) for judged in check.judgements],
@@ -143,15 +143,14 @@ def _outcome(given: NamedOutcome) -> tuple[Json, tuple[str, ...]]:
             "choices": [_choice(choice) for choice in check.choices],
         },
     }
-    return answer, check.questions
 
 
-def check_answer(given: tuple[NamedOutcome, ...]) -> Json:
+def check_answer(given: CheckInput) -> Json:
     """The answer of /check."""
-    answers = [_outcome(outcome) for outcome in given]
-    questions = dict.fromkeys(slug for _, slugs in answers for slug in slugs)
+    checks = together([check_outcome(outcome.claims) for outcome in given.outcomes], given.belongings)
+    questions = dict.fromkeys(slug for check in checks for slug in check.questions)
     return versioned(
-        outcomes=[answer for answer, _ in answers],
+        outcomes=[_outcome(outcome, check) for outcome, check in zip(given.outcomes, checks, strict=True)],
         unread=[],
         questions=[{"slug": slug, "text": QUESTIONS[slug]} for slug in questions],
     )

@@ -37,6 +37,10 @@ class AppraisalInput:
     outcomes: tuple[OutcomeInput, ...]
 
 
+SHARED = "shared-total"
+"""Beginning of the id of a total taken over from the other outcomes of the paper."""
+
+
 class Range(NamedTuple):
     """Smallest and largest value over all tables that fit; equal where one table fits. Nan if undefined."""
 

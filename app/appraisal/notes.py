@@ -6,7 +6,7 @@ from collections.abc import Mapping
 
 import numpy as np
 
-from app.appraisal.model import BothArms, MeasureAppraisal, Note, OutcomeInput
+from app.appraisal.model import SHARED, BothArms, MeasureAppraisal, Note, OutcomeInput
 from app.measures.proportion import clopper_pearson
 from app.measures.registry import Measure
 from app.reconstruct.arm import ArmFits
@@ -72,6 +72,9 @@ def notes_on(
 ) -> tuple[Note, ...]:
     """Notes on one outcome."""
     notes = _arm_notes(intervention) + _arm_notes(comparator)
+    notes += [
+        Note("total_taken_over", {"arm": c.arm, "total": int(c.said.value)}) for c in given.claims if c.id.startswith(SHARED)
+    ]
     if both is None:
         return tuple(notes)
     if not both.fits.complete:

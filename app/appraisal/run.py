@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 from fractions import Fraction
 
 import numpy as np
 
 from app.appraisal.effects import Effects, effects_of, risk_of
 from app.appraisal.model import (
+    SHARED,
     Appraisal,
     AppraisalInput,
     BothArms,
@@ -24,7 +26,8 @@ from app.appraisal.notes import notes_on
 from app.measures.fourfold import Floats, Fourfold
 from app.measures.interval import Interval
 from app.measures.needed import direction_of, needed_segments, rounded_needed
-from app.printed.claims import ARMS, Claim
+from app.printed.claims import ARMS, Arm, Claim
+from app.reconstruct.across import Belonging, together
 from app.reconstruct.arm import ArmFits, arm_fits
 from app.reconstruct.judge import check_outcome
 from app.reconstruct.tables import Fits, ends, joined, tables_that_fit
@@ -96,9 +99,8 @@ def _both(intervention: RiskAppraisal, comparator: RiskAppraisal, given: Outcome
     return BothArms(intervention, comparator, fits, measures, needed, tests)
 
 
-def appraise_outcome(given: OutcomeInput) -> OutcomeAppraisal:
-    """All that follows from one outcome's claims."""
-    check = check_outcome(given.claims, trust=given.trust)
+def _outcome(given: OutcomeInput, check: OutcomeCheck) -> OutcomeAppraisal:
+    """All that follows from one outcome's claims, once they are checked."""
     first, second = (arm_fits(arm, _of_arm(given.claims)) for arm in ARMS)
     fits = None
     if _joint(given.claims, check):
@@ -126,7 +128,7 @@ def _of_arm(claims: Sequence[Claim]) -> tuple[Claim, ...]:
 
 def _joint(claims: Sequence[Claim], check: OutcomeCheck) -> bool:
     """Whether tables are settled by more than each arm's own boxes."""
-    return bool(check.set_aside) or len(_of_arm(claims)) < len(claims)
+    return bool(check.set_aside) or len(_of_arm(claims)) < len(claims) or bool(check.tables.narrowed)
 
 
 def _p_range(p: Floats, effects: Effects) -> Range:
@@ -138,6 +140,39 @@ def _p_range(p: Floats, effects: Effects) -> Range:
     return found
 
 
+def _belongings(outcomes: Sequence[OutcomeInput]) -> list[Belonging]:
+    """Which outcomes are components of the first, and which exclude each other."""
+    components = tuple(i for i, outcome in enumerate(outcomes) if i and outcome.part_of == "component")
+    categories = tuple(i for i, outcome in enumerate(outcomes) if i and outcome.part_of == "category")
+    found = [Belonging("components", 0, components)] if components else []
+    return [*found, Belonging("categories", None, (0, *categories))] if categories else found
+
+
+def _with_shared_totals(outcomes: tuple[OutcomeInput, ...]) -> tuple[OutcomeInput, ...]:
+    """Where an outcome states no people analysed for an arm and all others state the same, that number is taken over."""
+    stated = {arm: [_total(outcome, arm) for outcome in outcomes] for arm in ARMS}
+    found = []
+    for i, outcome in enumerate(outcomes):
+        shared = []
+        for arm in ARMS:
+            others = {claim.said.value for claim in stated[arm][:i] + stated[arm][i + 1 :] if claim is not None}
+            if stated[arm][i] is None and len(others) == 1 and _needs_total(outcome, arm):
+                shared.append(replace(next(c for c in stated[arm] if c is not None), id=f"{SHARED}-{arm}"))
+        found.append(replace(outcome, claims=(*outcome.claims, *shared)) if shared else outcome)
+    return tuple(found)
+
+
+def _total(outcome: OutcomeInput, arm: Arm) -> Claim | None:
+    return next((c for c in outcome.claims if c.arm == arm and c.quantity == "total" and c.total_kind is None), None)
+
+
+def _needs_total(outcome: OutcomeInput, arm: Arm) -> bool:
+    boxes = {c.quantity for c in outcome.claims if c.arm == arm}
+    return bool(boxes & {"events", "non_events", "risk"}) and not boxes >= {"events", "non_events"}
+
+
 def appraise(given: AppraisalInput) -> Appraisal:
-    """Appraise every outcome of a paper."""
-    return Appraisal(tuple(appraise_outcome(outcome) for outcome in given.outcomes))
+    """Appraise every outcome of a paper, each also against the others."""
+    outcomes = _with_shared_totals(given.outcomes)
+    checks = together([check_outcome(o.claims, trust=o.trust) for o in outcomes], _belongings(outcomes))
+    return Appraisal(tuple(_outcome(outcome, check) for outcome, check in zip(outcomes, checks, strict=True)))

@@ -30,6 +30,7 @@ from app.printed.claims import (
     unit_factor,
 )
 from app.printed.number import LONGEST, PrintedNumber, read_number
+from app.reconstruct.across import Belonging, Kind
 
 MOST_CLAIMS = 400
 MOST_OUTCOMES = 60
@@ -66,6 +67,14 @@ class NamedOutcome:
     name: str | None
     horizon: str | None
     claims: tuple[Claim, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class CheckInput:
+    """The outcomes of a paper, and how they belong together."""
+
+    outcomes: tuple[NamedOutcome, ...]
+    belongings: tuple[Belonging, ...]
 
 
 def _optional(body: Body, field: str, allowed: tuple[str, ...]) -> str | None:
@@ -210,7 +219,7 @@ def _in_range(body: Body, quantity: Quantity, number: PrintedNumber, unit: str) 
             body.add("printed", found.message, found.hint, found.slug)
 
 
-def claims_input(given: Any) -> tuple[NamedOutcome, ...]:
+def claims_input(given: Any) -> CheckInput:
     """Read the body of /check.
 
     Raises
@@ -218,7 +227,7 @@ def claims_input(given: Any) -> tuple[NamedOutcome, ...]:
     InputProblems
         Everything that is wrong with it.
     """
-    body = Body(given, ("claims", "totals"))
+    body = Body(given, ("claims", "totals", "belongings"))
     claims = [c for i, inner in enumerate(body.each("claims", _CLAIM, MOST_CLAIMS)) if (c := _claim(inner, i)) is not None]
     totals = _totals(body)
     ids: set[str] = set()
@@ -231,8 +240,28 @@ def claims_input(given: Any) -> tuple[NamedOutcome, ...]:
     names = list(dict.fromkeys(c.outcome for c in claims))
     if len(names) > MOST_OUTCOMES:
         body.add("claims", f"More than {MOST_OUTCOMES} outcomes.", "Send them in parts.", "too_many_outcomes")
+    belongings = _belongings(body, names) if body.has("belongings") else ()
     body.finish()
-    return tuple(_outcome(name, [c for c in claims if c.outcome == name], totals) for name in names)
+    return CheckInput(tuple(_outcome(name, [c for c in claims if c.outcome == name], totals) for name in names), belongings)
+
+
+def _belongings(body: Body, names: list[str | None]) -> tuple[Belonging, ...]:
+    """Which outcomes are components of one, and which exclude each other, by their names."""
+    found = []
+    for inner in body.each("belongings", ("kind", "whole", "parts"), MOST_OUTCOMES):
+        kind: Kind = inner.choice("kind", ("components", "categories"))
+        whole, parts = inner.given.get("whole"), inner.given.get("parts")
+        named = isinstance(parts, list) and all(isinstance(part, str) and part in names for part in parts)
+        if not named or not parts:
+            inner.add("parts", "Names of outcomes are needed.", "Give the names that the claims give.", "unknown_choice")
+        elif kind == "components" and (not isinstance(whole, str) or whole not in names):
+            inner.add(
+                "whole", "The name of the whole outcome is needed.", "Give the name that the claims give.", "unknown_choice"
+            )
+        else:
+            place = names.index(whole) if kind == "components" else None
+            found.append(Belonging(kind, place, tuple(names.index(part) for part in parts)))
+    return tuple(found)
 
 
 def _totals(body: Body) -> dict[Arm, PrintedNumber]:

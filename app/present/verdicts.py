@@ -324,6 +324,8 @@ def note_sentence(note: Advice) -> str:
             f"The counts say {'more' if evidence['higher'] else 'fewer'} with the intervention, the hazard ratio the other "
             "way round. That may be so with unequal follow-up, adjustment or crossing curves."
         )
+    if note.slug == "parts_do_not_add":
+        return _PARTS[str(evidence["why"])]
     if note.slug == "more_digits_than_people":
         return f"Two decimals say more than {people(int(str(evidence['total'])))} people can."
     return _NOTES[note.slug]
@@ -339,7 +341,6 @@ _NOTES: Mapping[str, str] = {
         "Times to the event or rates are printed too: one over a risk difference from counts is naive if follow-up varied."
     ),
     "differs_between_places": "The same quantity is printed with another value elsewhere.",
-    "parts_do_not_add": "The parts do not go with the whole.",
     "p_mirrors_threshold": "A bound is printed where a value could be: the P itself may be far smaller.",
     "interval_narrower_than_counts": (
         "The interval is narrower than counts allow: clusters, repeated events or rates may be behind it."
@@ -365,6 +366,12 @@ NARROW_TEXT: Mapping[str, str] = {
     }.items()
 }
 """Which further printed figure would tell the tables apart, by the name of the figure."""
+
+_PARTS: Mapping[str, str] = {
+    "part_exceeds_whole": "More have this component than have the whole outcome, in every table that fits.",
+    "parts_fewer_than_whole": "The components together are fewer than the whole: one may not be listed.",
+    "groups_exceed_all": "The groups that exclude each other hold more people together than there are.",
+}
 
 QUESTIONS: Mapping[str, str] = {
     "crude_or_adjusted": "Is the estimate adjusted, stratified or from a model? It fits the counts only if it is.",

@@ -187,6 +187,11 @@ def _fixed(head: str, body: str) -> Callable[[Mapping[str, Any], Names], tuple[s
 _NOTES: dict[str, Callable[[Mapping[str, Any], Names], tuple[str, str]]] = {
     "no_count_fits": _no_count_fits,
     "more_if_truncated": _truncated,
+    "total_taken_over": lambda evidence, names: (
+        "People analysed taken over",
+        f"{names.start(evidence['arm'])}: {people(evidence['total'])}, as at the other outcomes of this sheet. Type the number "
+        "if it is another here.",
+    ),
     "naive_follow_up": _naive,
     "odds_part_from_risk": _odds_part,
     "too_many_tables": lambda evidence, _names: (

@@ -49,7 +49,7 @@ def tables_that_fit(intervention: ArmFits, comparator: ArmFits) -> Fits:
     arms = [_all_points(arm) if listed else ends(arm) for arm in (intervention, comparator)]
     complete = len(arms[0]) * len(arms[1]) <= MOST_EVALUATED
     if not complete:
-        arms = [points[np.unique(np.linspace(0, len(points) - 1, 100).astype(np.int64))] for points in arms]
+        arms = [points[np.unique(np.linspace(0, len(points) - 1, 60).astype(np.int64))] for points in arms]
     rows, columns = np.meshgrid(np.arange(len(arms[0])), np.arange(len(arms[1])), indexing="ij")
     first, second = arms[0][rows.ravel()], arms[1][columns.ravel()]
     middles = [arm.runs[len(arm.runs) // 2] for arm in (intervention, comparator)]

@@ -145,13 +145,15 @@ class Choice:
 class Tables:
     """The tables that fit: all of them if `complete`, else corners of the band, and `count` of candidates.
 
-    None fit at all where `tables` is None: the claims leave a total open.
+    None fit at all where `tables` is None: the claims leave a total open. `narrowed` says that another
+    outcome of the paper left fewer.
     """
 
     tables: Fourfold | None
     count: int
     complete: bool
     narrow_with: str | None = None
+    narrowed: bool = False
 
 
 @dataclass(frozen=True, slots=True)

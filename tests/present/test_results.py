@@ -295,6 +295,11 @@ EVIDENCE: dict[str, tuple[dict[str, object], str, str]] = {
         "More counts if digits were cut off",
         "Usual care: 68 to 69 of 409 would print so only if further digits were cut off instead of rounded. Not used here.",
     ),
+    "total_taken_over": (
+        {"arm": "comparator", "total": 409},
+        "People analysed taken over",
+        "Usual care: 409, as at the other outcomes of this sheet. Type the number if it is another here.",
+    ),
     "naive_follow_up": (
         {"follow_up": "varies"},
         "Follow-up varies: naive figures",
