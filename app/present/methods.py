@@ -25,6 +25,7 @@ from app.measures.registry import (
 )
 from app.present.figures.coverage import coverage_line, coverage_map, size_line
 from app.present.numerals import fixed
+from app.reconstruct.blind_spot import Passing, blind_spot
 from app.sources import SOURCES
 
 _USE = {
@@ -83,6 +84,7 @@ class MethodsView:
     groups: tuple[GroupView, ...]
     only_checking: tuple[MethodView, ...]
     sources: tuple[SourceView, ...]
+    passing: tuple[str, ...]
     version: str
 
 
@@ -151,6 +153,24 @@ _MAP_INTRO = (
 
 
 @cache
+def _passing() -> tuple[str, ...]:
+    """The blind spot in sentences."""
+    found = blind_spot()
+    told = [
+        f"P printed {size} too large, to two decimals: {_share(passing)} pass, as some usual test gives them."
+        for size, passing in found["p"].items()
+    ]
+    told += [
+        f"One limit of a risk ratio {size} {'unit' if size == '1' else 'units'} of its last digit off: {_share(passing)} pass."
+        for size, passing in found["limit"].items()
+    ]
+    return tuple(told)
+
+
+def _share(passing: Passing) -> str:
+    return f"{fixed(100 * passing.passed / passing.tried, 0)}% of {passing.tried}"
+
+
 def methods_view() -> MethodsView:
     """The whole page; the registry does not change while the program runs."""
     effects = (
@@ -224,4 +244,6 @@ def methods_view() -> MethodsView:
         ),
     ]
     hidden = tuple(_method(row, f"checking-{i}") for i, row in enumerate(everything()) if not row.offered)
-    return MethodsView(tuple(groups), hidden, tuple(SourceView(k, t) for k, t in sorted(SOURCES.items())), __version__)
+    return MethodsView(
+        tuple(groups), hidden, tuple(SourceView(k, t) for k, t in sorted(SOURCES.items())), _passing(), __version__
+    )
