@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from fractions import Fraction
 from math import comb
 
@@ -9,14 +10,14 @@ import numpy as np
 import pytest
 
 from app.measures.fourfold import Fourfold
-from app.measures.registry import TESTS
+from app.measures.registry import TESTS, NoDifferenceTest
 
-RULES = {
-    "fisher_irwin": lambda p, a: sum(x for x in p.values() if x <= p[a]),
+RULES: dict[str, Callable[[dict[int, Fraction], int], Fraction]] = {
+    "fisher_irwin": lambda p, a: sum((x for x in p.values() if x <= p[a]), Fraction(0)),
     "fisher_double": lambda p, a: min(Fraction(1), 2 * min(_tail(p, a, -1), _tail(p, a, 1))),
     "fisher_midp_double": lambda p, a: min(Fraction(1), 2 * (min(_tail(p, a, -1), _tail(p, a, 1)) - p[a] / 2)),
-    "fisher_midp_irwin_halfobs": lambda p, a: sum(x for x in p.values() if x <= p[a]) - p[a] / 2,
-    "fisher_midp_irwin_halfties": lambda p, a: sum(x if x < p[a] else x / 2 for x in p.values() if x <= p[a]),
+    "fisher_midp_irwin_halfobs": lambda p, a: sum((x for x in p.values() if x <= p[a]), Fraction(0)) - p[a] / 2,
+    "fisher_midp_irwin_halfties": lambda p, a: sum((x if x < p[a] else x / 2 for x in p.values() if x <= p[a]), Fraction(0)),
 }
 
 
@@ -41,7 +42,7 @@ def test_every_table_up_to_nine_by_eight(key: str) -> None:
 
 
 @pytest.mark.parametrize("test", [t for t in TESTS if not t.on_request], ids=lambda t: t.key)
-def test_exchanging_the_arms_changes_no_p(test) -> None:  # type: ignore[no-untyped-def]
+def test_exchanging_the_arms_changes_no_p(test: NoDifferenceTest) -> None:
     a, c = (x.ravel() for x in np.meshgrid(np.arange(0, 13), np.arange(0, 10)))
     table = Fourfold(a, 12, c, 9)
     np.testing.assert_allclose(test.p(table), test.p(table.swapped()), rtol=1e-11, atol=1e-300)

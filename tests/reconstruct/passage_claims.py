@@ -9,7 +9,7 @@ import json
 from pathlib import Path
 from typing import Any
 
-from app.printed.claims import Arm, Claim, PrintedInterval, Quantity, default_unit, number_kind
+from app.printed.claims import Arm, Claim, PrintedInterval, Quantity, RiskKind, default_unit, number_kind
 from app.printed.number import PrintedNumber, read_number
 
 PASSAGES = Path(__file__).parents[1] / "checks" / "passages.jsonl"
@@ -54,7 +54,7 @@ def _arm_claims(arm: dict[str, Any], text: str) -> list[Claim]:
     for quantity, printed in texts.items():
         if printed is None:
             continue
-        kind = "kaplan_meier" if quantity == "risk" and arm.get("percent_kind") == "KM" else None
+        kind: RiskKind | None = "kaplan_meier" if quantity == "risk" and arm.get("percent_kind") == "KM" else None
         place = _place(text, printed, f"{int(printed):,}") if quantity == "events" else None
         found.append(
             Claim(
@@ -65,7 +65,7 @@ def _arm_claims(arm: dict[str, Any], text: str) -> list[Claim]:
                 default_unit(quantity),
                 risk_kind=kind,
                 span=place,
-            )  # type: ignore[arg-type]
+            )
         )
     if arm["rate"]:
         found.append(Claim(f"{role}-rate", "rate", role, _number(arm["rate"], "rate"), "per_10000_person_years"))
@@ -87,9 +87,9 @@ def _measure_claim(measure: dict[str, Any], key: str) -> Claim:
         quantity = "risk_ratio"
     interval = None
     if measure["low"] is not None:
-        ends = (_number(measure[end], quantity) for end in ("low", "high"))
+        low, high = (_number(measure[end], quantity) for end in ("low", "high"))
         kind = "credible" if measure.get("interval_kind") == "credible" else "confidence"
-        interval = PrintedInterval(*ends, confidence_level=(measure["level"] or 95) / 100, kind=kind)  # type: ignore[arg-type]
+        interval = PrintedInterval(low, high, confidence_level=(measure["level"] or 95) / 100, kind=kind)  # type: ignore[arg-type]
     unit = UNITS.get(measure["unit"] or "", default_unit(quantity))
     return Claim(key, quantity, None, _number(measure["value"], quantity), unit, interval=interval, basis=_basis(measure))  # type: ignore[arg-type]
 

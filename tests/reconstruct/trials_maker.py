@@ -108,7 +108,7 @@ def hybrid_difference(table: tuple[int, int, int, int]) -> tuple[float, float, f
 def p_of(table: tuple[int, int, int, int], test: str) -> float:
     """P by scipy."""
     a, n1, c, n2 = table
-    cells = [[a, n1 - a], [c, n2 - c]]
+    cells = np.array([[a, n1 - a], [c, n2 - c]])
     if test == "fisher":
         return float(stats.fisher_exact(cells).pvalue)
     return float(stats.chi2_contingency(cells, correction=test == "yates").pvalue)
