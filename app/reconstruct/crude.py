@@ -164,10 +164,13 @@ def excused(claim: Claim, of: Stated, tables: Fourfold) -> bool:
     inner = internal(claim)
     a, n1, c, n2 = tables.floats()
     small = bool(min(x.min() for x in (a, n1 - a, c, n2 - c)) < SMALL)
-    fits = any(bool(matches(replace(way, interval=None), tables, of.timed).estimate_near.any()) for way in ways)
-    if inner and not (small and inner == ("interval_off_centre",) and fits):
+    alone = [matches(replace(way, interval=None), tables, of.timed) for way in ways]
+    near = any(bool(match.estimate_near.any()) for match in alone)
+    if inner and not (small and inner == ("interval_off_centre",) and near):
         return False
-    return widens(claim, ways, tables, of.timed, small=small) if fits else lies_near(claim, tables)
+    if near and widens(claim, ways, tables, of.timed, small=small):
+        return True
+    return not any(bool(match.estimate.any()) for match in alone) and lies_near(claim, tables)
 
 
 def p_lies_near(question: AskedP, spread: tuple[float, float], *, closely: bool) -> bool:

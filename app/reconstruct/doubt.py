@@ -125,25 +125,34 @@ class _Ledger:
         return float(self.charges.sum(axis=1).min()) if self.charges.size else np.inf
 
     def add(self, first: _ArmPool, second: _ArmPool) -> None:
-        """Charge the product of two arms' candidates; those already dearer than the cheapest are dropped early."""
+        """Charge the product of two arms' candidates, the cheapest of them first; what is dearer already is left out."""
         if not first.events.size or not second.events.size:
             return
         own, other = (pool.charges.sum(axis=1) for pool in (first, second))
-        rows, columns = np.nonzero(own[:, None] + other[None, :] <= self.cheapest)
-        if rows.size > _MOST_JUDGED:
-            keep = np.argsort(own[rows] + other[columns], kind="stable")[:_MOST_JUDGED]
-            rows, columns = rows[keep], columns[keep]
+        price = own[:, None] + other[None, :]
+        rows, columns = np.nonzero(price <= self.cheapest)
+        if not rows.size:
+            return
+        order = np.argsort(price[rows, columns], kind="stable")[:_MOST_JUDGED]
+        rows, columns = rows[order], columns[order]
+        head = int(np.count_nonzero(price[rows, columns] < price[rows[0], columns[0]] + COUNT * 0.5))
+        self._charge(first, second, rows[: min(head, _MOST_READ)], columns[: min(head, _MOST_READ)])
+        self.read()
+        rest = np.flatnonzero(price[rows, columns] <= self.cheapest)
+        rest = rest[rest >= min(head, _MOST_READ)]
+        if rest.size:
+            self._charge(first, second, rows[rest], columns[rest])
+            self.read()
+
+    def _charge(self, first: _ArmPool, second: _ArmPool, rows: Counts, columns: Counts) -> None:
         tables = Fourfold(first.events[rows], first.totals[rows], second.events[columns], second.totals[columns])
         charges = np.hstack([first.charges[rows], second.charges[columns], self._both(tables)])
-        for i, claim in enumerate((*self.measures, *self.p_values)):
-            left = len(self.measures) + len(self.p_values) - i
+        for claim in (*self.measures, *self.p_values):
             live = charges.sum(axis=1) <= self.cheapest
             column = np.full(rows.size, COUNT * 2)
             if live.any():
                 column[live] = self._derived(claim, take(tables, live))
             charges = np.hstack([charges, column[:, None]])
-            if left == 1:
-                break
         self.tables = Fourfold(
             *(
                 np.concatenate([getattr(self.tables, name), getattr(tables, name)])
@@ -214,8 +223,6 @@ def doubt(of: Stated, aside: Iterable[str] = ()) -> Doubt | None:
     ledger = _Ledger(of, aside)
     firm = [_arm_pool(arm, free=False) for arm in of.arms]
     ledger.add(firm[0], firm[1])
-    if ledger.charges.size:
-        ledger.read()
     if ledger.cheapest >= COUNT * 0.9 and ledger.measures:
         loose = [_arm_pool(arm, free=True) for arm in of.arms]
         ledger.add(loose[0], firm[1])

@@ -331,6 +331,14 @@ def test_advice_never_changes_a_verdict(slug: str, made: Claim) -> None:
     assert all(note_sentence(note) for note in found.notes)
 
 
+def test_needed_to_treat_beside_a_hazard_ratio_is_noted() -> None:
+    hazard = claim("hr", "hazard_ratio", "0.65", low="0.45", high="0.94")
+    found = judged(hazard, a("number_needed_to_treat", "19", horizon="12 months"))
+    assert [note.slug for note in found.notes] == ["needed_incomplete", "needed_from_rates"]
+    alone = judged(a("number_needed_to_treat", "19", "10", "144", horizon="12 months"))
+    assert alone.notes == ()
+
+
 def test_rates_and_person_time() -> None:
     base = [
         claim("e1", "events", "46", ARMS[0]),
