@@ -13,6 +13,7 @@ LAYERS: dict[str, int] = {
     "sources": 0,
     "measures": 1,
     "printed": 1,
+    "reading": 2,
     "reconstruct": 2,
     "appraisal": 3,
     "shelf": 4,

@@ -65,7 +65,8 @@ class BelongingShape(Shape):
 class CheckRequest(Shape):
     """The printed numbers of a paper."""
 
-    claims: Annotated[list[ClaimShape], Field(min_length=1, max_length=400)]
+    claims: Annotated[list[ClaimShape], Field(min_length=1, max_length=400)] | None = None
+    passage: Annotated[str, Field(max_length=200_000)] | None = None
     totals: TotalsShape | None = None
     belongings: Annotated[list[BelongingShape], Field(min_length=1, max_length=60)] | None = None
 
@@ -150,6 +151,29 @@ class UnreadShape(Shape):
     span: list[int]
     text: str
     why: str
+
+
+class ReadRequest(Shape):
+    """Sentences of results, or a table, as copied from a paper."""
+
+    passage: Annotated[str, Field(max_length=200_000)]
+
+
+class ReadOutcomeShape(Shape):
+    """One outcome as read."""
+
+    name: str | None
+    horizon: str | None
+    claims: list[ClaimShape]
+
+
+class ReadAnswer(Shape):
+    """What a passage prints, what was not understood, and what only the reader can say."""
+
+    outcomes: list[ReadOutcomeShape]
+    unread: list[UnreadShape]
+    questions: list[QuestionShape]
+    version: str
 
 
 class CheckAnswer(Shape):

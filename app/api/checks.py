@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Iterable
 from typing import Any
 
 from app.api.answers import Json, versioned
@@ -10,6 +11,7 @@ from app.intake.claims import CheckInput, NamedOutcome
 from app.present.verdicts import QUESTIONS, because
 from app.printed.claims import Claim, PrintedInterval
 from app.printed.number import PrintedNumber
+from app.reading.read import Reading
 from app.reconstruct.across import together
 from app.reconstruct.judge import check_outcome
 from app.reconstruct.narrowing import ranges
@@ -151,6 +153,23 @@ def check_answer(given: CheckInput) -> Json:
     questions = dict.fromkeys(slug for check in checks for slug in check.questions)
     return versioned(
         outcomes=[_outcome(outcome, check) for outcome, check in zip(given.outcomes, checks, strict=True)],
-        unread=[],
-        questions=[{"slug": slug, "text": QUESTIONS[slug]} for slug in questions],
+        unread=_unread(given.reading),
+        questions=_questions((*(given.reading.questions if given.reading else ()), *questions)),
+    )
+
+
+def _unread(reading: Reading | None) -> list[Json]:
+    return [{"span": list(u.span), "text": u.text, "why": u.why} for u in reading.unread] if reading else []
+
+
+def _questions(slugs: Iterable[str]) -> list[Json]:
+    return [{"slug": slug, "text": QUESTIONS[slug]} for slug in slugs]
+
+
+def read_answer(found: Reading) -> Json:
+    """The answer of /read."""
+    return versioned(
+        outcomes=[{"name": o.name, "horizon": None, "claims": [claim_json(c) for c in o.claims]} for o in found.outcomes],
+        unread=_unread(found),
+        questions=_questions(found.questions),
     )

@@ -84,6 +84,13 @@ def _rates(body: Any) -> Json:
 
 ENDPOINTS: tuple[Endpoint, ...] = (
     Endpoint(
+        "/read",
+        "The printed numbers of a passage as claims.",
+        check_schemas.ReadRequest,
+        check_schemas.ReadAnswer,
+        lambda body: checks.read_answer(claims.read_input(body)),
+    ),
+    Endpoint(
         "/check",
         "Every table that prints so, and a verdict for each printed number.",
         check_schemas.CheckRequest,

@@ -30,6 +30,8 @@ from app.printed.claims import (
     unit_factor,
 )
 from app.printed.number import LONGEST, PrintedNumber, read_number
+from app.reading.read import Reading, read
+from app.reading.text import MOST
 from app.reconstruct.across import Belonging, Kind
 
 MOST_CLAIMS = 400
@@ -75,6 +77,7 @@ class CheckInput:
 
     outcomes: tuple[NamedOutcome, ...]
     belongings: tuple[Belonging, ...]
+    reading: Reading | None = None
 
 
 def _optional(body: Body, field: str, allowed: tuple[str, ...]) -> str | None:
@@ -227,7 +230,11 @@ def claims_input(given: Any) -> CheckInput:
     InputProblems
         Everything that is wrong with it.
     """
-    body = Body(given, ("claims", "totals", "belongings"))
+    body = Body(given, ("claims", "passage", "totals", "belongings"))
+    if body.has("passage") and not body.has("claims"):
+        return _from_passage(body)
+    if body.has("passage"):
+        body.add("passage", "A passage and claims are both given.", "Give one of them.", "unknown_field")
     claims = [c for i, inner in enumerate(body.each("claims", _CLAIM, MOST_CLAIMS)) if (c := _claim(inner, i)) is not None]
     totals = _totals(body)
     ids: set[str] = set()
@@ -243,6 +250,43 @@ def claims_input(given: Any) -> CheckInput:
     belongings = _belongings(body, names) if body.has("belongings") else ()
     body.finish()
     return CheckInput(tuple(_outcome(name, [c for c in claims if c.outcome == name], totals) for name in names), belongings)
+
+
+def passage_of(body: Body) -> str:
+    """The passage of a body; empty where it is refused."""
+    passage = body.given.get("passage")
+    if not isinstance(passage, str):
+        body.add("passage", "A passage is needed, as text.", "Give the sentences as they were copied.", "missing_field")
+    elif len(passage) > MOST:
+        body.add("passage", f"The passage is longer than {MOST:,} characters.", "Send it in parts.", "too_long")
+    else:
+        return passage
+    return ""
+
+
+def _from_passage(body: Body) -> CheckInput:
+    """The outcomes that a passage prints, with the paper's totals where it prints none."""
+    passage, totals = passage_of(body), _totals(body)
+    if body.has("belongings"):
+        body.add("belongings", "Outcomes are named by claims only.", "Give claims, or leave this out.", "unknown_field")
+    body.finish()
+    found = read(passage)
+    outcomes = [_outcome(o.name, list(o.claims), totals) for o in found.outcomes]
+    return CheckInput(tuple(outcomes), (), found)
+
+
+def read_input(given: Any) -> Reading:
+    """Read the body of /read.
+
+    Raises
+    ------
+    InputProblems
+        Everything that is wrong with it.
+    """
+    body = Body(given, ("passage",))
+    passage = passage_of(body)
+    body.finish()
+    return read(passage)
 
 
 def _belongings(body: Body, names: list[str | None]) -> tuple[Belonging, ...]:

@@ -375,6 +375,7 @@ _PARTS: Mapping[str, str] = {
 
 QUESTIONS: Mapping[str, str] = {
     "crude_or_adjusted": "Is the estimate adjusted, stratified or from a model? It fits the counts only if it is.",
+    "which_is_comparator": "Which group is the comparator? The one named first is taken as the intervention.",
     "which_test_gave_p": "Which test gave the P? It and the interval stand on different sides of 0.05.",
 }
 """What a reader is asked, by the slug of the question."""

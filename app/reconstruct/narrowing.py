@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from fractions import Fraction
-
 import numpy as np
 
 from app.measures.difference import risk_difference
@@ -50,8 +48,3 @@ def ranges(tables: Fourfold) -> dict[str, tuple[float, float]]:
             "odds_ratio": odds_ratio(tables),
         }
     return {name: (float(np.min(values)), float(np.max(values))) for name, values in figures.items()}
-
-
-def tenth_of_last(decimals: int) -> Fraction:
-    """A tenth of a unit of the last digit: what is recomputed is given to one digit more than is printed."""
-    return Fraction(10) ** -(decimals + 1)

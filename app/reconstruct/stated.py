@@ -6,7 +6,7 @@ from collections.abc import Collection, Iterable
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
-from app.printed.claims import ARMS, RATIOS, Arm, Claim, Quantity
+from app.printed.claims import ARMS, Arm, Claim, Quantity
 from app.printed.span import Span
 from app.reconstruct.arm import Run, totals_of
 from app.reconstruct.p_prints import asked_p
@@ -291,8 +291,3 @@ def _totals_beside(other: tuple[Run, ...] | None, combined: int | None, *, equal
     if equal and other:
         return range(min(run.total for run in other), max(run.total for run in other) + 1)
     return None
-
-
-def is_ratio(claim: Claim) -> bool:
-    """Whether no effect is 1 for the claim."""
-    return claim.quantity in RATIOS

@@ -1,0 +1,278 @@
+"""A passage -> outcomes of claims, with what was not understood and what a reader is asked."""
+
+from __future__ import annotations
+
+import re
+from bisect import bisect_left
+from dataclasses import dataclass, field, replace
+from functools import lru_cache
+from typing import Literal
+
+from app.printed.claims import (
+    ARMS,
+    Arm,
+    Basis,
+    Claim,
+    RiskKind,
+    Sense,
+)
+from app.reading.arms import totals_in, words_of_arms
+from app.reading.grammar import Mark
+from app.reading.marks import Estimate, Marked, marks_of
+from app.reading.sentences import sentence_of
+from app.reading.table import Table, table_of
+from app.reading.text import Even, even, is_table
+from app.reading.write import Writer, arm_claims, basis_of, measure_claim, p_claim, rate_claim
+
+Question = Literal["which_is_comparator"]
+
+
+@dataclass(frozen=True, slots=True)
+class Unread:
+    """A number of which no claim was made."""
+
+    span: tuple[int, int]
+    text: str
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class ReadOutcome:
+    """One outcome as read."""
+
+    claims: tuple[Claim, ...]
+    name: str | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Reading:
+    """All that a passage says."""
+
+    outcomes: tuple[ReadOutcome, ...]
+    unread: tuple[Unread, ...]
+    questions: tuple[Question, ...]
+
+
+@dataclass
+class _Group:
+    """The marks of one outcome."""
+
+    arms: list[Mark] = field(default_factory=list)
+    pair: Mark | None = None
+    rates: list[Mark] = field(default_factory=list)
+    estimates: list[Estimate] = field(default_factory=list)
+    p_values: list[Mark] = field(default_factory=list)
+
+    @property
+    def start(self) -> int:
+        """Where its first mark stands."""
+        marks = [
+            *self.arms,
+            *self.rates,
+            *(e.mark for e in self.estimates),
+            *self.p_values,
+            *([self.pair] if self.pair else []),
+        ]
+        return min((mark.start for mark in marks), default=0)
+
+    @property
+    def full(self) -> bool:
+        """Whether both arms are there."""
+        return len(self.arms) >= 2 or self.pair is not None or len(self.rates) >= 2
+
+
+def _groups(marked: Marked, text: str) -> list[_Group]:
+    """Marks in order, gathered into outcomes: a third arm, or the same measure again, begins another."""
+    events: list[tuple[int, str, object]] = []
+    events += [(m.start, "arm", m) for m in marked.counts]
+    events += [(m.start, "pair", m) for m in marked.pairs]
+    events += [(m.start, "rate", m) for m in marked.rates]
+    events += [(e.mark.start, "estimate", e) for e in marked.estimates]
+    events += [(m.start, "p", m) for m in marked.p_values]
+    groups = [_Group()]
+    for _, kind, what in sorted(events, key=lambda event: event[0]):
+        now = groups[-1]
+        if _begins(now, kind, what, text):
+            now = _Group()
+            groups.append(now)
+        if kind == "arm":
+            now.arms.append(what)  # type: ignore[arg-type]
+        elif kind == "pair":
+            now.pair = what  # type: ignore[assignment]
+        elif kind == "rate":
+            now.rates.append(what)  # type: ignore[arg-type]
+        elif kind == "estimate":
+            now.estimates.append(what)  # type: ignore[arg-type]
+        else:
+            now.p_values.append(what)  # type: ignore[arg-type]
+    return [g for g in groups if g.estimates or g.p_values or g.rates or (g.full and any("percent" in m.parts for m in g.arms))]
+
+
+def _begins(now: _Group, kind: str, what: object, text: str) -> bool:
+    """Whether a mark begins another outcome."""
+    place = what.mark.start if isinstance(what, Estimate) else what.start  # type: ignore[attr-defined]
+    other_sentence = now.start < sentence_of(text, place)[0] if (now.arms or now.pair or now.estimates or now.rates) else False
+    if kind in ("arm", "pair"):
+        beside_rates = bool(now.rates) and len(now.arms) < 2 and not other_sentence
+        return (now.full and not beside_rates) or (bool(now.estimates) and other_sentence)
+    if kind == "rate":
+        return len(now.rates) >= 2 or (bool(now.estimates) and other_sentence)
+    if kind == "estimate":
+        same = [e for e in now.estimates if e.mark.quantity == what.mark.quantity]  # type: ignore[attr-defined]
+        return bool(same) and basis_of(same[-1], text) == basis_of(what, text)  # type: ignore[arg-type]
+    return bool(now.p_values) and other_sentence
+
+
+_CUMULATIVE = re.compile(r"kaplan|cumulative incidence|incidence was|survival", re.IGNORECASE)
+_DIRECTION = re.compile(
+    r"(?P<word>higher|lower|commoner|less common|more common|more often|less often)[ ]+(?:in|on|with|among)[ ]+(?P<who>[^,.;()]{3,60}?)[ ]+(?:than|compared)",
+    re.IGNORECASE,
+)
+
+
+def _sense(text: str, group: _Group) -> Sense | None:
+    """The word of direction of the intervention arm, where it is said whose it is."""
+    start, end = sentence_of(text, group.start)
+    hit = _DIRECTION.search(text, start, end)
+    if hit is None:
+        return None
+    roles = words_of_arms(hit["who"])
+    if not roles:
+        return None
+    higher = hit["word"].lower() in ("higher", "commoner", "more common", "more often")
+    of_intervention = roles[0][1] == "intervention"
+    return "higher" if higher == of_intervention else "lower"
+
+
+@lru_cache(maxsize=4)
+def _arm_words(text: str) -> list[tuple[int, Arm]]:
+    return words_of_arms(text)
+
+
+def _order(text: str, marks: list[Mark]) -> tuple[tuple[Arm, Arm], bool]:
+    """Which arm each of two marks is of, and whether that is only assumed."""
+    start, end = sentence_of(text, marks[0].start)
+    end = max(end, min(len(text), marks[1].end + 60))
+    words = [word for word in _arm_words(text)[bisect_left(_arm_words(text), (start, "")) :][:12] if word[0] < end]
+    named: dict[Arm, int] = {}
+    for place, arm in words:
+        named.setdefault(arm, place)
+    if len(named) == 2:
+        return (("comparator", "intervention") if named["comparator"] < named["intervention"] else ARMS), False
+    if len(named) == 1:
+        arm, place = next(iter(named.items()))
+        second = place > marks[1].start or (marks[0].end < place and marks[1].start - place < 14)
+        if arm == "comparator":
+            return (ARMS if second else ("comparator", "intervention")), False
+        return (("comparator", "intervention") if second else ARMS), False
+    return ARMS, True
+
+
+def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], asked: set[Question]) -> ReadOutcome:
+    text = write.even.text
+    claims: list[Claim | None] = []
+    marks = group.arms or group.rates or ([group.pair, group.pair] if group.pair else [])
+    order, assumed = _order(text, marks[:2]) if len(marks) >= 2 else (ARMS, False)
+    if assumed:
+        asked.add("which_is_comparator")
+    start, end = sentence_of(text, group.start)
+    kind: RiskKind | None = (
+        "cumulative_incidence"
+        if _CUMULATIVE.search(text, start, end) and not any("events" in m.parts for m in group.arms)
+        else None
+    )
+    for mark, arm in zip(group.arms, order, strict=False):
+        claims += arm_claims(write, mark, arm, kind)
+    if group.pair is not None:
+        claims += [
+            write.claim(group.pair, part, "events", arm, "people") for part, arm in zip(("first", "second"), order, strict=True)
+        ]
+    for mark, arm in zip(group.rates, order, strict=False):
+        claims.append(rate_claim(write, mark, arm))
+    if marks:
+        claims += _earlier_totals(write, claims, totals)
+    sense = _sense(text, group)
+    measured = [measure_claim(write, e, sense if i == 0 else None) for i, e in enumerate(group.estimates)]
+    bases = {c.basis for c in measured if c is not None}
+    basis: Basis = next(iter(bases)) if len(bases) == 1 else "unstated"
+    claims += measured
+    claims += [p_claim(write, mark, basis) for mark in group.p_values]
+    return ReadOutcome(tuple(c for c in claims if c is not None))
+
+
+def _earlier_totals(write: Writer, claims: list[Claim | None], totals: dict[Arm, tuple[int, int]]) -> list[Claim | None]:
+    """Totals stated apart from the counts, for arms that have none of their own."""
+    have = {c.arm for c in claims if c is not None and c.quantity == "total"}
+    found: list[Claim | None] = []
+    for arm, (start, end) in totals.items():
+        if arm not in have and any(c is not None and c.arm == arm for c in claims):
+            found.append(write.claim(Mark("total", start, end, {"total": (start, end)}), "total", "total", arm, "people"))
+    return found
+
+
+_LEFT_ALONE = re.compile(
+    r"\b(?:19|20)\d\d\b|\d+(?:\.\d+)?[ ]*(?:mg|g|kg|ml|mL|mm|cm|µg|mcg|mmol|IU|h|hours?|days?|weeks?|months?|years?|d|min|minutes)\b|"
+    r"\b\d{1,2}/\d{1,2}/\d{2,4}\b|(?:table|figure|fig\.?|ref\.?|day|week|month|aged?|year|grade|stage|phase)[ ]*\d+|\b[A-Za-z]{1,12}\d+|\b95[ ]*%|\d\d(?:\.\d)?[ ]*%[ ]*(?=C\.?I|conf|cred|Bayes|IC|KI)",
+    re.IGNORECASE,
+)
+_ANY_NUMBER = re.compile(r"(?<![\w.])\d+(?:[.,]\d+)*")
+
+
+def _unread(write: Writer) -> tuple[Unread, ...]:
+    text = write.even.text
+    known = bytearray(len(text))
+    for start, end in (*write.read, *(hit.span() for hit in _LEFT_ALONE.finditer(text))):
+        known[start:end] = b"\x01" * (end - start)
+    hits = [hit.span() for hit in _ANY_NUMBER.finditer(text) if not any(known[hit.start() : hit.end()])]
+    return tuple(Unread(write.even.span(*span), write.even.printed(*span), "not_understood") for span in hits)
+
+
+def _read_table(passage: Even, table: Table) -> Reading:
+    """The rows of a table as outcomes; totals of the header are each row's own."""
+    write = Writer(passage)
+    outcomes = []
+    for row in table.rows:
+        claims: list[Claim | None] = []
+        for mark, arm in zip(row.arms, table.order, strict=True):
+            claims += arm_claims(write, mark, arm, None)
+        claims += _earlier_totals(write, claims, table.totals)
+        if row.estimate is not None:
+            claims.append(measure_claim(write, row.estimate, None))
+        if row.p_value is not None:
+            claims.append(p_claim(write, row.p_value, "unstated"))
+        named = tuple(replace(c, outcome=row.name or None, place="table") for c in claims if c is not None)
+        outcomes.append(ReadOutcome(named, row.name or None))
+    write.read += [hit.span() for hit in re.finditer(r"[^\n]*\n", passage.text) if hit.end() <= table.rows[0].start]
+    asked: tuple[Question, ...] = ("which_is_comparator",) if table.assumed else ()
+    return Reading(tuple(outcomes), _unread(write), asked)
+
+
+MOST_OUTCOMES = 200
+"""Outcomes read of one passage; the numbers of any more are unread."""
+
+
+def read(passage: str) -> Reading:
+    """Read a passage.
+
+    Parameters
+    ----------
+    passage : str
+        As pasted. Offsets of spans refer to it.
+
+    Returns
+    -------
+    Reading
+        Outcomes with two or more claims that bear on each other; numbers not understood; what is asked.
+    """
+    text = even(passage)
+    table = table_of(text.text) if is_table(text.text) else None
+    if table is not None:
+        return _read_table(text, table)
+    marked = marks_of(text)
+    write = Writer(text)
+    asked: set[Question] = set()
+    totals = totals_in(text.text, marked.taken)
+    groups = _groups(marked, text.text)[:MOST_OUTCOMES]
+    outcomes = [_outcome(write, group, totals, asked) for group in groups]
+    kept = tuple(o for o in outcomes if len(o.claims) >= 2 or any(c.interval for c in o.claims))
+    return Reading(kept, _unread(write), tuple(sorted(asked)))
