@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 
 from app.measures.backcalc import altman_bland_interval_from_p
+from app.measures.cluster import design_effect
 from app.measures.fourfold import Fourfold
 from app.measures.hazard import risk_difference_at
 from app.measures.paired import mcnemar_exact, mcnemar_midp
@@ -13,6 +14,7 @@ from app.measures.persontime import PersonTime
 from app.measures.pvalues import likelihood_ratio_statistic
 from app.measures.rate_pvalues import p_exact_cond, p_mid
 from app.measures.strata import breslow_day, breslow_day_tarone
+from app.measures.translate import risk_from_odds_ratio
 
 
 def test_homogeneity_needs_two_strata_and_a_common_ratio() -> None:
@@ -53,3 +55,19 @@ def test_likelihood_ratio_needs_events_and_non_events() -> None:
 
 def test_no_discordant_pair_is_no_evidence() -> None:
     assert mcnemar_midp(0, 0) == mcnemar_exact(0, 0) == 1.0
+
+
+def test_odds_ratios_at_the_ends_of_risk() -> None:
+    """Nobody and everybody keep their risk; an infinite odds ratio makes any risk above 0 certain."""
+    np.testing.assert_array_equal(risk_from_odds_ratio(np.inf, np.array([0.0, 0.3, 1.0])), [0.0, 1.0, 1.0])
+    np.testing.assert_array_equal(risk_from_odds_ratio(2.0, np.array([0.0, 1.0])), [0.0, 1.0])
+    assert risk_from_odds_ratio(2, 0) == 0.0
+
+
+def test_a_correlation_of_one_is_allowed() -> None:
+    assert design_effect(20.0, 1.0) == 20.0
+
+
+def test_counts_of_those_without() -> None:
+    others = Fourfold(3, 10, 4, 20).complement()
+    assert [int(x) for x in (others.events_intervention, others.events_comparator, others.total_comparator)] == [7, 16, 20]
