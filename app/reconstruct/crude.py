@@ -19,7 +19,7 @@ from app.measures.ratio import risk_ratio
 from app.printed.claims import Claim
 from app.reconstruct.between import internal, log_width
 from app.reconstruct.p_prints import AskedP, p_window
-from app.reconstruct.prints import Asked, Timed, limits_of, matches, methods, shown_limits, turned
+from app.reconstruct.prints import Asked, Timed, limits_of, matches, methods, shown_limits, turned, turned_time
 from app.reconstruct.stated import Stated
 from app.reconstruct.window import exact
 
@@ -124,7 +124,7 @@ def widens(claim: Claim, ways: tuple[Asked, ...], tables: Fourfold, timed: Timed
         ends = []
         for method in methods(way.meant):
             if method.printed_use == "usual":
-                limits = limits_of(method, turned(way, tables), timed, interval.confidence_level)
+                limits = limits_of(method, turned(way, tables), turned_time(way, timed), interval.confidence_level)
                 if limits is not None:
                     ends.append(shown_limits(way, limits))
         lows, highs = (np.concatenate([e[i] for e in ends]) for i in (0, 1))

@@ -14,7 +14,18 @@ import numpy as np
 from app.measures.fourfold import Counts, Flags, Floats, Fourfold
 from app.measures.interval import Interval
 from app.reconstruct.p_prints import AnyTest, AskedP, p_of, p_window, tests
-from app.reconstruct.prints import SLOW, AnyMethod, Asked, Timed, interval_windows, levels, limits_of, methods, turned
+from app.reconstruct.prints import (
+    SLOW,
+    AnyMethod,
+    Asked,
+    Timed,
+    interval_windows,
+    levels,
+    limits_of,
+    methods,
+    turned,
+    turned_time,
+)
 from app.reconstruct.window import Window
 
 FEW_ROWS = 300
@@ -126,7 +137,7 @@ def _by_method(
     generous = [Window(2.0 * w.low - w.high, 2.0 * w.high - w.low) for w in windows]
 
     def limits(some: Rows, a: Counts) -> Interval:
-        found = limits_of(method, turned(question, some.tables(a)), timed, level)
+        found = limits_of(method, turned(question, some.tables(a)), turned_time(question, timed), level)
         if found is None:
             raise ValueError("a method of rates needs person-time")
         return found

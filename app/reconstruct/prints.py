@@ -214,15 +214,15 @@ def limits_of(method: AnyMethod, tables: Fourfold, timed: Timed | None, level: f
     return None if timed is None else method.interval(timed.of(tables), level)
 
 
-def _own_estimate(method: AnyMethod, tables: Fourfold, raw: Floats) -> Floats:
-    own = method.estimate if isinstance(method, EffectMethod) else None
-    return raw if own is None else own(tables)
-
-
 def turned(question: Asked, tables: Fourfold) -> Fourfold:
     """The tables as the claim counts them."""
     tables = tables.complement() if question.complement else tables
     return tables.swapped() if question.swapped else tables
+
+
+def turned_time(question: Asked, timed: Timed | None) -> Timed | None:
+    """Person-time in the order in which the claim takes the arms."""
+    return Timed(timed.comparator, timed.intervention) if timed is not None and question.swapped else timed
 
 
 def take(tables: Fourfold, rows: Flags) -> Fourfold:
@@ -272,7 +272,7 @@ def matches(
     """
     question = _printed_as_needed(question)
     nothing = np.zeros(tables.events_intervention.shape, dtype=np.bool_)
-    counted = turned(question, tables)
+    counted, timed = turned(question, tables), turned_time(question, timed)
     raw = _estimate(question, counted, timed)
     if raw is None:
         return Match(nothing, nothing, nothing, nothing, nothing)

@@ -7,7 +7,18 @@ import numpy as np
 from app.measures.fourfold import Floats, Fourfold
 from app.printed.claims import REDUCTIONS, Claim
 from app.reconstruct.p_prints import AskedP, p_of, p_window, tests
-from app.reconstruct.prints import Asked, Timed, limits_of, matches, methods, shown_estimate, shown_limits, take, turned
+from app.reconstruct.prints import (
+    Asked,
+    Timed,
+    limits_of,
+    matches,
+    methods,
+    shown_estimate,
+    shown_limits,
+    take,
+    turned,
+    turned_time,
+)
 from app.reconstruct.stated import Stated
 from app.reconstruct.verdict import Recomputed, Spread
 from app.reconstruct.window import exact, whole_unit
@@ -53,8 +64,8 @@ def recomputed_measure(
             return (), None
         way = ways[0]
     few = _few(tables)
-    counted, factor = turned(way, few), float(way.factor)
-    estimate = shown_estimate(way, counted, of.timed)
+    counted, factor, timed = turned(way, few), float(way.factor), turned_time(way, of.timed)
+    estimate = shown_estimate(way, counted, timed)
     if estimate is None:
         return (), None
     middle = float(estimate[estimate.size // 2])
@@ -64,7 +75,7 @@ def recomputed_measure(
     for method in methods(way.meant):
         if method.printed_use != "usual" or (method.key == "half_when_empty" and _no_cell_empty(counted)):
             continue
-        limits = limits_of(method, counted, of.timed, way.interval.confidence_level)
+        limits = limits_of(method, counted, timed, way.interval.confidence_level)
         if limits is None:
             continue
         low, high = shown_limits(way, limits)

@@ -117,8 +117,6 @@ _SHIFTS: tuple[tuple[float, float], ...] = ((0.0, 0.0), (0.5, 1.0), (0.5, 0.5))
 def _other_risk(question: Asked, window: Window, risk: Floats, people: float) -> tuple[Floats, Floats]:
     """Risks of the first arm that, beside `risk` of the second, give the measure a value in the window."""
     low, high = (float(end) for end in window)
-    if question.complement:
-        risk = 1.0 - risk
     if question.meant == "risk_difference":
         ends = (risk - high, risk - low) if question.swapped else (risk + low, risk + high)
     else:
@@ -133,8 +131,6 @@ def _other_risk(question: Asked, window: Window, risk: Floats, people: float) ->
         ends = (base / high, base / low) if question.swapped else (base * low, base * high)
         if question.meant == "odds_ratio":
             ends = (ends[0] / (1.0 + ends[0]), np.where(np.isinf(ends[1]), 1.0, ends[1] / (1.0 + ends[1])))
-    if question.complement:
-        return np.asarray(1.0 - ends[1]), np.asarray(1.0 - ends[0])
     return np.asarray(ends[0]), np.asarray(ends[1])
 
 

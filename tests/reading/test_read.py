@@ -122,6 +122,71 @@ def test_invented_passages(passage: str, claims: list[list[tuple[str, str | None
     assert said(passage) == claims
 
 
+MORE = [
+    (
+        "The number needed to treat was 19 (95% CI 10 to 144).",
+        [("number_needed_to_treat", None, "19 (10 to 144)")],
+    ),
+    (
+        "Risk difference -0.05 (95% CI -0.10 to -0.01).",
+        [("risk_difference", None, "-0.05 (-0.10 to -0.01)")],
+    ),
+    (
+        "There were 54 fewer per 1000; absolute difference, 54 per 1000 (95% CI, 7 to 101).",
+        [("risk_difference", None, "54 (7 to 101)")],
+    ),
+    (
+        "Relative risk 0.68 (95% credible interval 0.52 to 0.88).",
+        [("risk_ratio", None, "0.68 (0.52 to 0.88)")],
+    ),
+    (
+        "Efficacy was 33% (95% CI 53 to 5).",
+        [("relative_risk_reduction", None, "33 (5 to 53)")],
+    ),
+    (
+        "Clusters given the active programme reported it less often (ARR 0.83, 95% CI 0.66 to 1.06).",
+        [("risk_ratio", None, "0.83 (0.66 to 1.06)")],
+    ),
+    (
+        "Rates were 11.4 per 100 person-years with active and 18.1 per 100 person-years with placebo (rate ratio 0.63, 95% CI "
+        "0.44 to 0.92; P for interaction = 0.4).",
+        [
+            ("rate", "intervention", "11.4"),
+            ("rate", "comparator", "18.1"),
+            ("rate_ratio", None, "0.63 (0.44 to 0.92)"),
+            ("p_value", None, "0.4"),
+        ],
+    ),
+    (
+        "Seven of eight active but none of 32 controls responded (P≤.05).",
+        [
+            ("events", "intervention", "Seven"),
+            ("total", "intervention", "eight"),
+            ("events", "comparator", "none"),
+            ("total", "comparator", "32"),
+            ("p_value", None, ".05"),
+        ],
+    ),
+]
+
+
+@pytest.mark.parametrize(("passage", "claims"), MORE, ids=[str(i) for i in range(len(MORE))])
+def test_invented_sentences_of_one_measure(passage: str, claims: list[tuple[str, str | None, str]]) -> None:
+    assert said(passage)[0] == claims
+
+
+def test_bases_levels_and_tests_are_read_from_the_words() -> None:
+    (outcome,) = read(
+        "After the active drug 30 of 200 (15%) and after placebo 40 of 200 (20%) had it (adjusted odds ratio 0.70, 90% CI 0.45 to "
+        "1.08; P=0.003 for noninferiority)."
+    ).outcomes
+    odds, p = outcome.claims[-2:]
+    assert odds.basis == "adjusted"
+    assert odds.interval is not None
+    assert odds.interval.confidence_level == 0.9
+    assert (p.test, p.basis) == ("noninferiority", "adjusted")
+
+
 def test_numbers_not_understood_are_listed_and_the_rest_left_alone() -> None:
     passage = (
         "In 2019 the 24 mg dose was given for 12 weeks; 17 others withdrew. Deaths: 4/120 active v 9/118 placebo (P=0.15)."

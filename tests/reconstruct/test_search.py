@@ -201,6 +201,28 @@ def test_every_table_where_totals_are_open_or_joined(how: str) -> None:
         assert _found(problem) == expected
 
 
+@pytest.mark.parametrize("kind", ["rate_ratio", "rate_difference"])
+@pytest.mark.parametrize("turned", [False, True])
+@pytest.mark.usefixtures("windows_only")
+def test_every_table_with_person_time(kind: str, turned: bool) -> None:
+    """Events are open; person-time and a ratio or difference of rates narrow them, whichever arm is smaller."""
+    a, n1, c, n2 = (9, 40, 17, 33) if turned else (9, 33, 17, 40)
+    time = [claim(f"{arm}-time", "person_time", text, arm) for arm, text in ((ARMS[0], "31.5"), (ARMS[1], "38.0"))]
+    rates = a / 31.5, c / 38.0
+    text = f"{rates[0] / rates[1]:.2f}" if kind == "rate_ratio" else f"{100 * (rates[0] - rates[1]):.1f}"
+    unit = "proportion" if kind == "rate_ratio" else "per_100_person_years"
+    problem = stated([*_totals((a, n1, c, n2)), *time, claim("x", kind, text, unit=unit)]).problem()  # type: ignore[arg-type]
+    expected = _enumerated(problem)
+    assert (a, n1, c, n2) in expected
+    assert _found(problem) == expected
+
+
+def test_too_many_rows_to_look_at_are_not_looked_at() -> None:
+    found = search.search(stated(_totals((0, 3_000_000, 0, 3_000_000))).problem())
+    assert found is not None
+    assert not found.complete
+
+
 def test_an_open_total_is_not_guessed() -> None:
     only = stated([claim("r1", "risk", "11.0", ARMS[0]), claim("r2", "risk", "16.4", ARMS[1])])
     assert arm_runs(only.arms[0]) is None

@@ -211,7 +211,7 @@ def test_very_many_joined_tables_are_spread_with_their_extremes() -> None:
     assert outcome.both.fits.tables.events_intervention.size <= MOST_JOINED + 16
     ratio = ranges(found)["risk_ratio"]
     assert outcome.both.measures["risk_ratio"].estimate == ratio
-    assert 0.671 <= ratio[0] <= ratio[1] <= 0.6725
+    assert 0.66 <= ratio[0] <= ratio[1] <= 0.68
 
 
 def test_one_arm_alone_is_held_against_itself() -> None:
