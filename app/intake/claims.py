@@ -172,7 +172,10 @@ def _claim(body: Body, place: int) -> Claim | None:
         body.add("arm", "Which arm is not said.", 'Give "intervention" or "comparator".', "missing_field")
     number = _number(body, "printed", "value", quantity)
     interval = _interval(body, quantity)
-    if number is None and interval is None and len(body.problems) == before:
+    bare = (
+        number is None and quantity in PER_ARM and quantity != "total"
+    )  # a total may be a range; the others need their number
+    if (bare or (number is None and interval is None)) and len(body.problems) == before:
         body.add("printed", "This number is missing.", 'Give it as printed, such as "0.67".', "missing_field")
     unit = _text(body, "unit") or default_unit(quantity)
     if unit_factor(unit) is None:
@@ -191,7 +194,7 @@ def _claim(body: Body, place: int) -> Claim | None:
     return Claim(
         id=key or f"claim-{place}",
         quantity=quantity,
-        arm=arm,
+        arm=arm if quantity in PER_ARM else None,
         number=number,
         unit=unit,
         operator=body.choice("operator", OPERATORS, "="),

@@ -139,7 +139,10 @@ def stated(claims: Iterable[Claim], *, equal: bool = False) -> Stated:
 
 def _arm(claims: tuple[Claim, ...], arm: Arm) -> ArmStated:
     def of(*quantities: Quantity) -> tuple[Claim, ...]:
-        return tuple(c for c in claims if c.arm == arm and c.quantity in quantities and (c.number is not None or c.interval))
+        ranged = "total" in quantities
+        return tuple(
+            c for c in claims if c.arm == arm and c.quantity in quantities and (c.number is not None or (ranged and c.interval))
+        )
 
     totals = of("total")
     kinds = {c.total_kind for c in totals}

@@ -50,3 +50,17 @@ def test_error_in_passage(client: TestClient, body: dict[str, object], field: st
 def test_error_a_passage_and_claims(client: TestClient) -> None:
     answer = client.post("/api/v1/check", json={"passage": "x", "claims": [{"quantity": "p_value", "printed": "0.04"}]})
     assert [(p["field"], p["slug"]) for p in answer.json()["problems"]] == [("passage", "unknown_field")]
+
+
+@pytest.mark.parametrize("quantity", ["risk", "rate", "person_time", "events"])
+def test_error_a_number_of_an_arm_needs_its_number(client: TestClient, quantity: str) -> None:
+    claim = {"quantity": quantity, "arm": "intervention", "printed": None, "interval": {"low": "1", "high": "2"}}
+    answer = client.post("/api/v1/check", json={"claims": [claim]})
+    assert answer.status_code == 422
+    assert answer.json()["problems"][0]["slug"] == "missing_field"
+
+
+def test_an_arm_said_of_a_measure_is_let_pass(client: TestClient) -> None:
+    claim = {"quantity": "risk_ratio", "arm": "intervention", "printed": "0.67", "interval": {"low": "0.70", "high": "0.95"}}
+    (outcome,) = client.post("/api/v1/check", json={"claims": [claim]}).json()["outcomes"]
+    assert [c["finding"] for c in outcome["claims"]] == ["estimate_outside_interval"]

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from typing import Any
 
 import pytest
 
@@ -17,7 +18,7 @@ from app.reconstruct.verdict import Judgement
 from app.reconstruct.window import Window
 from tests.reconstruct.trials_maker import ARMS, claim
 
-CRUDE = {"basis": "crude"}
+CRUDE: dict[str, Any] = {"basis": "crude"}
 
 
 def verdicts(*claims: Claim) -> dict[str, tuple[str, str]]:
