@@ -217,7 +217,7 @@ def _in_range(body: Body, quantity: Quantity, number: PrintedNumber, unit: str) 
     factor = unit_factor(unit)
     refusals: list[tuple[bool, str]] = [
         (quantity == "risk" and factor is not None and number.exact * factor > 1, "percentage_above_100"),
-        (quantity == "total" and number.exact == 0, "total_is_zero"),
+        (quantity in ("total", "person_time") and number.exact == 0, "total_is_zero"),
     ]
     for refused, slug in refusals:
         if refused:

@@ -30,7 +30,7 @@ def _read(name: str, kind: FigureKind, text: str) -> tuple[PrintedNumber | None,
         return None, [problem(name, "count_too_large")]
     if kind.quantity == "risk" and number.value > 100:
         return None, [problem(name, "percentage_above_100")]
-    if kind.quantity == "total" and number.value == 0:
+    if kind.quantity in ("total", "person_time") and number.value == 0:
         return None, [problem(name, "total_is_zero", example=kind.example)]
     return number, []
 

@@ -69,7 +69,7 @@ class Stated:
     def ways(self, claim: Claim) -> Question:
         """The ways of taking a measure claim that its label allows; empty where counts say nothing of it."""
         question = asked(claim)
-        if question is None:
+        if question is None or (question.meant in ("rate_ratio", "rate_difference") and self.timed is None):
             return ()
         ways = oriented(question, comparator_first=self.comparator_first)
         if question.meant == "risk_ratio" and self.timed is not None:
