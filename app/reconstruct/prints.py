@@ -204,6 +204,9 @@ SLOW: frozenset[str] = frozenset(
 )
 """Methods and tests that take microseconds a table: asked last."""
 
+MOST_SLOW = 10_000
+"""Of more tables than this the slow methods are not asked."""
+
 _CLOSED = frozenset({"katz_log", "woolf_logit", "wald", "log_wald", "poisson_model", "wald_pooled", "gart_half"})
 
 
@@ -286,13 +289,14 @@ def matches(
         if isinstance(method, EffectMethod) and method.estimate is not None:
             rows &= _within_reach(question, counted, raw)
             mine, mine_near = nothing.copy(), nothing.copy()
+            rows = _askable(method, rows)
             if rows.any():
                 own = _shown(question, method.estimate(take(counted, rows)))
                 mine[rows], mine_near[rows] = _holds(question, question.number, own)
             estimate, estimate_near = estimate | mine, estimate_near | mine_near
         else:
             mine, mine_near = plain, plain_near
-        rows = rows & (mine if strict else mine_near)
+        rows = _askable(method, rows & (mine if strict else mine_near))
         if not rows.any():
             continue
         some = take(counted, rows)
@@ -307,6 +311,11 @@ def matches(
             else:
                 rare[rows] |= both & mine[rows]
     return Match(sure, close | sure, rare, estimate, estimate_near)
+
+
+def _askable(method: AnyMethod, rows: Flags) -> Flags:
+    """The tables to ask a method of: none where it is slow and they are very many."""
+    return np.zeros_like(rows) if method.key in SLOW and np.count_nonzero(rows) > MOST_SLOW else rows
 
 
 def _within_reach(question: Asked, counted: Fourfold, raw: Floats) -> Flags:
