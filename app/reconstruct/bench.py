@@ -54,11 +54,6 @@ class Bench:
         a, n1, c, n2 = self.tables.floats()
         return (a, n1) if claim.arm == "intervention" else (c, n2)
 
-    @property
-    def others(self) -> int:
-        """How many claims agree among themselves."""
-        return len([c for c in (*self.of.counts, *self.of.measures, *self.of.p_values) if c.id not in self.aside])
-
 
 def higher(bench: Bench) -> bool | None:
     """Whether every table says the intervention arm has more; None if they say neither."""

@@ -137,6 +137,7 @@ def _judged(of: Stated, settled: _Settled) -> OutcomeCheck:
     judgements += measured
     judgements += [judge_p(c, bench, measured) for c in of.p_values]
     judgements += [Judgement(c, "cannot_be_checked", reason="too_little") for c in of.margins]
+    judgements = _told_how_many_agree(judgements)
     shown = Tables(
         found.tables if found is not None and (found.count or not found.complete) else None,
         0 if found is None else found.count if found.complete else found.candidates,
@@ -145,6 +146,12 @@ def _judged(of: Stated, settled: _Settled) -> OutcomeCheck:
     )
     questions = tuple(dict.fromkeys(str(j.evidence["question"]) for j in judgements if "question" in j.evidence))
     return OutcomeCheck(tuple(judgements), shown, settled.aside, _choices(of, settled) if settled.tied else (), questions)
+
+
+def _told_how_many_agree(judgements: list[Judgement]) -> list[Judgement]:
+    """The judgements of doubted claims, told how many of the others agree with each other."""
+    agree = sum(j.verdict in ("agrees", "agrees_within_rounding") for j in judgements)
+    return [replace(j, evidence={**j.evidence, "others": agree}) if "others" in j.evidence else j for j in judgements]
 
 
 def _in_order(of: Stated) -> tuple[Claim, ...]:

@@ -95,7 +95,7 @@ def _impossible(claim: Claim, bench: Bench) -> bool:
 
 def _doubted(claim: Claim, bench: Bench) -> Judgement:
     findings: list[Finding] = []
-    evidence: dict[str, object] = {"others": bench.others}
+    evidence: dict[str, object] = {"others": 0}
     arm = bench.arm(claim)
     if claim.quantity == "events" and (total := _only(arm.total)) is not None and int(claim.said.value) > total:
         findings.append("count_exceeds_total")
