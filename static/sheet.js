@@ -23,14 +23,19 @@
   });
   addEventListener("pagehide", () => {
     if (!typed || !form()) return;
-    navigator.sendBeacon(form().action, new URLSearchParams(new FormData(form())));
-    sessionStorage.setItem(LEFT, location.pathname);
+    const body = new URLSearchParams(new FormData(form()));
+    navigator.sendBeacon(form().action, body);
+    sessionStorage.setItem(LEFT, JSON.stringify({ page: location.pathname, when: Date.now(), body: body.toString() }));
   });
-  // A reload asks for the page before the one it leaves can send its last words: look once more.
-  if (sessionStorage.getItem(LEFT) === location.pathname) {
-    const again = setTimeout(() => location.reload(), 300);
-    for (const kind of ["keydown", "pointerdown", "input"]) addEventListener(kind, () => clearTimeout(again), { once: true });
-  }
+  // A reload may be answered before the last words it left behind arrive: see that they do, and look once more.
+  const left = JSON.parse(sessionStorage.getItem(LEFT) ?? "null");
   sessionStorage.removeItem(LEFT);
+  if (left?.page === location.pathname && Date.now() - left.when < 10_000) {
+    const began = new AbortController();
+    for (const kind of ["keydown", "pointerdown", "input"]) addEventListener(kind, () => began.abort(), { once: true });
+    fetch(left.page, { method: "POST", body: new URLSearchParams(left.body) })
+      .then(() => began.signal.aborted || location.reload())
+      .catch(() => say(false));
+  }
   document.documentElement.classList.add("scripted");
 })();
