@@ -192,9 +192,9 @@ class _Ledger:
     def read(self) -> None:
         """Charge less where a claim that the cheapest tables contradict fits them under another reading."""
         totals = self.charges.sum(axis=1)
-        nearest = np.argsort(totals, kind="stable")[:_MOST_READ]
+        nearest = self._one_of_each(np.flatnonzero(totals < totals.min() + COUNT), totals)[:_MOST_READ]
         start = len(self.claims) - len(self.measures) - len(self.p_values)
-        for row in nearest[totals[nearest] < totals.min() + COUNT]:
+        for row in nearest:
             one = take(self.tables, np.arange(totals.size) == row)
             for i, claim in enumerate(self.claims):
                 charge = self.charges[row, i]
@@ -202,6 +202,17 @@ class _Ledger:
                     self.charges[row, i] = self._explained(claim, one)
                 elif charge == COUNT and risk_readings(claim, self.of, one):
                     self.charges[row, i] = READING
+
+    def _one_of_each(self, rows: Counts, totals: Floats) -> Counts:
+        """The rows, first the cheapest of each set of claims contradicted, then the second of each, and so on."""
+        order = rows[np.argsort(totals[rows], kind="stable")]
+        masks = (self.charges[order] > 0.0) @ (2.0 ** np.arange(len(self.claims)))
+        seen: dict[float, int] = {}
+        turns = []
+        for mask in masks:
+            turns.append(seen.setdefault(mask, 0))
+            seen[mask] += 1
+        return np.asarray(order[np.argsort(turns, kind="stable")])
 
     def _explained(self, claim: Claim, one: Fourfold) -> float:
         """Charge of a claim that a table does not print, if another reading or an adjustment explains it."""

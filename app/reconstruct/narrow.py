@@ -32,6 +32,8 @@ FEW_ROWS = 300
 """Above so many rows the slow tests and the conditional exact limits do not narrow; they still judge what is listed."""
 SLOWEST: frozenset[str] = frozenset({"fisher_exact_cond", "midp_exact_cond", "efficacy_exact_split"})
 _SAMPLED, _FEW_SAMPLED = 400, 60
+_LISTED = 4_000
+"""So few counts are judged one by one sooner than bisected."""
 _EDGE = 5
 _DIP = 3  # counts over which a test may rise and fall again
 
@@ -67,9 +69,9 @@ class Rows(NamedTuple):
 _Judge = Callable[[Rows, Counts], Flags]
 
 
-def _first(rows: Rows, reached: _Judge) -> Counts:
-    """First count of each row that `reached` holds for, once true staying true; one past the end if none."""
-    low, high = rows.low.copy(), rows.high + 1
+def _first(rows: Rows, reached: _Judge, start: Counts | None = None) -> Counts:
+    """First count of each row, from `start`, that `reached` holds for, once true staying true; one past the end if none."""
+    low, high = (rows.low if start is None else start).copy(), rows.high + 1
     while True:
         open_rows = np.flatnonzero(low < high)
         if not open_rows.size:
@@ -87,7 +89,8 @@ def _between(rows: Rows, reached: _Judge, passed: _Judge, room: int = 1) -> Rows
     rows = rows.where(possible)
     if not rows.c.size:
         return rows
-    return rows.between(_first(rows, reached) - room, _first(rows, passed) + room - 1)
+    start = _first(rows, reached)
+    return rows.between(start - room, _first(rows, passed, np.maximum(rows.low, start - room)) + room - 1)
 
 
 def _likely(rows: Rows, possible: Callable[[Rows], Flags], size: int) -> Rows:
@@ -159,9 +162,12 @@ def _by_method(
         with np.errstate(invalid="ignore"):
             return np.asarray((low > ends[0].high) | (high > ends[1].high))
 
-    rows = _likely(rows, possible, _FEW_SAMPLED if method.key in SLOW else _SAMPLED)
+    few = method.key in SLOW or rows.c.size <= 3 * _SAMPLED
+    rows = _likely(rows, possible, _FEW_SAMPLED if few else _SAMPLED)
     if method.key in SLOWEST and rows.c.size > FEW_ROWS:
         return rows.where(np.zeros(rows.c.size, dtype=np.bool_))
+    if method.key not in SLOW and rows.size <= _LISTED:
+        return rows
     if rising:
         return _between(rows, above, over)
     return _between(rows, lambda s, a: ~over(s, a), lambda s, a: ~above(s, a))

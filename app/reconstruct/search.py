@@ -153,12 +153,24 @@ def _question_windows(question: Asked, rows: Rows, problem: Problem) -> Iterator
                 yield _rate_window(question, window, rows, problem.timed)
             continue
         shifts = _SHIFTS if question.meant != "risk_difference" and question.interval is not None else _SHIFTS[:1]
-        for added, people in shifts:
-            with np.errstate(divide="ignore", invalid="ignore"):
-                risk = (rows.c + added) / (rows.n2 + people)
-                least = float(np.min(rows.n1) + np.min(rows.n2)) if rows.c.size else 1.0
-                low, high = _other_risk(question, window, risk, least)
-                yield _clip(rows, low * (rows.n1 + people) - added, high * (rows.n1 + people) - added)
+        yield _hull([_shifted(question, window, rows, *shift) for shift in shifts])
+
+
+def _shifted(question: Asked, window: Window, rows: Rows, added: float, people: float) -> _Ends:
+    with np.errstate(divide="ignore", invalid="ignore"):
+        risk = (rows.c + added) / (rows.n2 + people)
+        least = float(np.min(rows.n1) + np.min(rows.n2)) if rows.c.size else 1.0
+        low, high = _other_risk(question, window, risk, least)
+        return _clip(rows, low * (rows.n1 + people) - added, high * (rows.n1 + people) - added)
+
+
+def _hull(ends: list[_Ends]) -> _Ends:
+    """One window of each row over several, which overlap or nearly so; empty ones do not widen it."""
+    if len(ends) == 1:
+        return ends[0]
+    low = np.min([np.where(first <= last, first, np.iinfo(np.int64).max) for first, last in ends], axis=0)
+    high = np.max([np.where(first <= last, last, -1) for first, last in ends], axis=0)
+    return low, high
 
 
 def _rate_window(question: Asked, window: Window, rows: Rows, timed: Timed) -> _Ends:
