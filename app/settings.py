@@ -16,7 +16,7 @@ class Settings:
     """
 
     data_dir: Path
-    body_limit: int = 1_000_000
+    body_limit: int = 3_000_000
     patterns: bool = False
 
     @property

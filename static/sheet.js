@@ -21,6 +21,25 @@
     if (added) document.querySelector("#sheet [autofocus]")?.focus();
     added = false;
   });
+  // A box that the answer filled shows it, unless it was typed into since; the passage stays open while it is written.
+  const since = new Set();
+  document.addEventListener("input", (event) => {
+    since.add(event.target.name);
+    if (event.target.id === "passage") pasted = event.inputType === "insertFromPaste";
+  });
+  document.addEventListener("htmx:before:request", () => since.clear());
+  let pasted = false;
+  const passage = () => document.getElementById("passage");
+  document.addEventListener("htmx:after:swap", () => {
+    for (const box of document.querySelectorAll("#sheet-form input[type=text]")) {
+      const given = box.getAttribute("value") ?? "";
+      if (box !== document.activeElement && !since.has(box.name) && box.value !== given) box.value = given;
+    }
+    if (passage() && passage() === document.activeElement) passage().closest("details").open = !pasted;
+  });
+  document.addEventListener("focusout", (event) => {
+    if (event.target.id === "passage" && document.getElementById("passage-read")) event.target.closest("details").open = false;
+  });
   addEventListener("pagehide", () => {
     if (!typed || !form()) return;
     const body = new URLSearchParams(new FormData(form()));

@@ -169,7 +169,7 @@ def _questions(slugs: Iterable[str]) -> list[Json]:
 def read_answer(found: Reading) -> Json:
     """The answer of /read."""
     return versioned(
-        outcomes=[{"name": o.name, "horizon": None, "claims": [claim_json(c) for c in o.claims]} for o in found.outcomes],
+        outcomes=[{"name": o.name, "horizon": o.horizon, "claims": [claim_json(c) for c in o.claims]} for o in found.outcomes],
         unread=_unread(found),
         questions=_questions(found.questions),
     )

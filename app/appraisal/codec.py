@@ -8,6 +8,7 @@ from typing import Any, TypeVar
 
 from app.appraisal.fields import FIGURES
 from app.appraisal.sheet import (
+    ARM_ORDERS,
     CONFIDENCE_LEVELS,
     DESIGNS,
     EVENT_IS,
@@ -16,14 +17,15 @@ from app.appraisal.sheet import (
     PART_OF,
     TRUST,
     WORDS,
+    Filled,
     Sheet,
     TypedArm,
     TypedFigure,
     TypedOutcome,
 )
-from app.printed.claims import ARMS, BASES, PLACES
+from app.printed.claims import ARMS, BASES, PLACES, TEST_KINDS
 
-VERSION = 3
+VERSION = 4
 
 _Choice = TypeVar("_Choice", bound=str)
 
@@ -59,6 +61,19 @@ def _figure(figure: dict[str, Any]) -> TypedFigure:
         arm=_choice(figure["arm"], ("", *ARMS)),
         word=_choice(figure["word"], WORDS),
         label=_text(figure["label"]),
+        test=_choice(figure["test"], ("", *TEST_KINDS)),
+    )
+
+
+def _filled(item: dict[str, Any]) -> Filled:
+    return Filled(
+        outcome=int(item["outcome"]),
+        part=_text(item["part"]),
+        row=int(item["row"]),
+        slot=_text(item["slot"]),
+        text=_text(item["text"]),
+        start=int(item["start"]),
+        end=int(item["end"]),
     )
 
 
@@ -78,6 +93,10 @@ def decode(text: str) -> Sheet:
         sheet = {**sheet, "design": "trial"}  # the only design there was
     if document["version"] < 3:
         sheet = {**sheet, "outcomes": [{**o, "figures": [], "trust": "", "part_of": ""} for o in sheet["outcomes"]]}
+    if document["version"] < 4:
+        figures = [[{**f, "test": ""} for f in o["figures"]] for o in sheet["outcomes"]]
+        outcomes_then = [{**o, "figures": f} for o, f in zip(sheet["outcomes"], figures, strict=True)]
+        sheet = {**sheet, "passage": "", "arm_order": "as_read", "filled": [], "outcomes": outcomes_then}
     outcomes = tuple(
         TypedOutcome(
             name=_text(outcome["name"]),
@@ -100,4 +119,7 @@ def decode(text: str) -> Sheet:
         confidence_level=_choice(sheet["confidence_level"], CONFIDENCE_LEVELS),
         design=_choice(sheet["design"], DESIGNS),
         invented=bool(sheet["invented"]),
+        passage=_text(sheet["passage"]),
+        arm_order=_choice(sheet["arm_order"], ARM_ORDERS),
+        filled=tuple(_filled(item) for item in sheet["filled"]),
     )

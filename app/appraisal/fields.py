@@ -50,6 +50,7 @@ FIGURES: dict[str, FigureKind] = {
     "hazard_ratio": FigureKind("hazard ratio (HR)", "hazard_ratio", "proportion", "0.65"),
     "rate_ratio": FigureKind("rate ratio", "rate_ratio", "proportion", "0.66"),
     "risk_difference": FigureKind("risk difference, points", "risk_difference", "points", "5.4"),
+    "difference_proportion": FigureKind("risk difference, as a proportion", "risk_difference", "proportion", "0.054"),
     "difference_per_1000": FigureKind("fewer or more per 1000", "risk_difference", "per_1000", "54"),
     "relative_risk_reduction": FigureKind("relative reduction, %", "relative_risk_reduction", "percent", "33"),
     "relative_risk_increase": FigureKind("relative increase, %", "relative_risk_increase", "percent", "49"),
@@ -71,10 +72,18 @@ FIGURES: dict[str, FigureKind] = {
     "rate_per_1000": FigureKind(
         "rate per 1000 person-years", "rate", "per_1000_person_years", "114", per_arm=True, interval=False
     ),
+    "rate_per_10000": FigureKind(
+        "rate per 10 000 person-years", "rate", "per_10000_person_years", "1140", per_arm=True, interval=False
+    ),
+    "rate_per_100000": FigureKind(
+        "rate per 100 000 person-years", "rate", "per_100000_person_years", "11400", per_arm=True, interval=False
+    ),
+    "risk_per_1000": FigureKind("events per 1000 people", "risk", "per_1000", "110", per_arm=True, interval=False),
+    "risk_per_100000": FigureKind("events per 100 000 people", "risk", "per_100000", "11000", per_arm=True, interval=False),
 }
 """The further numbers a sheet can hold. A key, once released, is never renamed."""
 
-FIGURE_PARTS = ("kind", "value", "low", "high", "level", "basis", "place", "arm", "word", "label")
+FIGURE_PARTS = ("kind", "value", "low", "high", "level", "basis", "place", "arm", "word", "label", "test")
 
 TEXT_LIMIT = 4000
 """Longest text kept of one field; longer is refused with a message."""

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import Literal
 
-from app.printed.claims import Basis, Place
+from app.printed.claims import Basis, Place, TestKind
 
 EventIs = Literal["not_said", "unwanted", "wanted"]
 FollowUp = Literal["fixed", "varies", "not_said"]
@@ -56,6 +56,7 @@ class TypedFigure:
     arm: Literal["", "intervention", "comparator"] = ""
     word: str = ""
     label: str = ""
+    test: TestKind | Literal[""] = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -78,12 +79,35 @@ class TypedOutcome:
 
 
 @dataclass(frozen=True, slots=True)
+class Filled:
+    """Where a box got its text from: a stretch of the passage.
+
+    `outcome` and `part` say which box; `row` is the outcome's place in the passage, -1 where a reader
+    assigned the number by hand; `slot` names what it is there whatever box it went to. `text` is what was
+    put into the box: if the box says otherwise, it was corrected. `start` is -1 where no one stretch says it.
+    """
+
+    outcome: int
+    part: str
+    row: int
+    slot: str
+    text: str
+    start: int = -1
+    end: int = -1
+
+
+ArmOrder = Literal["as_read", "exchanged"]
+ARM_ORDERS: tuple[ArmOrder, ...] = ("as_read", "exchanged")
+
+
+@dataclass(frozen=True, slots=True)
 class Sheet:
     """One paper as typed.
 
     `arms` are the names of the arms; a contrast takes the first as intervention, the second as
     comparator. `design` of a case-control study forbids all that needs a risk. `invented` marks the
-    examples.
+    examples. `passage` is what was pasted, `arm_order` whether its arms are taken the other way round,
+    `filled` what it put into the boxes.
     """
 
     title: str = ""
@@ -93,3 +117,6 @@ class Sheet:
     confidence_level: str = "95"
     design: Design = "trial"
     invented: bool = False
+    passage: str = ""
+    arm_order: ArmOrder = "as_read"
+    filled: tuple[Filled, ...] = ()

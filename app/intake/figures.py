@@ -68,6 +68,7 @@ def read_figure(outcome: int, figure: TypedFigure, horizon: str) -> tuple[Claim 
         interval=interval,
         basis=figure.basis,
         sense=figure.word or None,  # type: ignore[arg-type]
+        test=figure.test or None,
         risk_kind=kind.risk_kind,
         total_kind=kind.total_kind,
         horizon=horizon or None,

@@ -41,6 +41,10 @@ _SENTENCES: dict[str, tuple[str, str]] = {
         "Check the three numbers, or leave one of them empty.",
     ),
     "text_too_long": ("This text is longer than {limit:,} characters.", "Shorten it; it is kept here until then."),
+    "passage_too_long": (
+        "The passage is longer than {limit:,} characters, and is not read.",
+        "Keep the sentences and tables that print the result.",
+    ),
     "more_needed": ("{what}", "{how}"),
     "contradicts_counts": (
         "{events:,} of {total:,} is {share}%, not {printed}.",

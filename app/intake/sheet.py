@@ -20,6 +20,7 @@ from app.appraisal.fields import (
 )
 from app.appraisal.model import AppraisalInput, OutcomeInput
 from app.appraisal.sheet import (
+    ARM_ORDERS,
     CONFIDENCE_LEVELS,
     DESIGNS,
     EVENT_IS,
@@ -29,6 +30,7 @@ from app.appraisal.sheet import (
     PART_OF,
     TRUST,
     WORDS,
+    ArmOrder,
     Design,
     EventIs,
     FollowUp,
@@ -41,10 +43,12 @@ from app.appraisal.sheet import (
 )
 from app.errors import FieldProblem, PrintedProblem
 from app.intake.figures import MOST_FIGURES, read_figure
+from app.intake.passage import assigned, fill
 from app.intake.problems import printed_problem, problem
 from app.measures.fourfold import LARGEST_TOTAL
-from app.printed.claims import ARMS, BASES, PLACES, Arm, Basis, Claim, Place
+from app.printed.claims import ARMS, BASES, PLACES, TEST_KINDS, Arm, Basis, Claim, Place, TestKind
 from app.printed.number import PrintedNumber, read_number
+from app.reading.text import MOST
 from app.reconstruct.arm import ArmFits, arm_fits
 
 
@@ -88,7 +92,7 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
             )
         )
     outcomes = _asked_for(form, outcomes)
-    return replace(
+    typed = replace(
         current,
         title=text("title", current.title),
         reference=text("reference", current.reference),
@@ -97,6 +101,12 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
         confidence_level=choice("confidence_level", CONFIDENCE_LEVELS, current.confidence_level),
         design=cast("Design", choice("design", DESIGNS, current.design)),
     )
+    passage = text("passage", current.passage).replace("\r\n", "\n")
+    order = cast("ArmOrder", choice("arm_order", ARM_ORDERS, current.arm_order))
+    if (passage, order) != (current.passage, current.arm_order):
+        typed = fill(typed, passage, order)
+    shown = form.get("outcome", "0")
+    return assigned(typed, form, int(shown) if shown.isascii() and shown.isdigit() and len(shown) < 4 else 0)
 
 
 def _figure_from_form(
@@ -120,6 +130,7 @@ def _figure_from_form(
         arm=cast("Arm", choice(name("arm"), ("", *ARMS), figure.arm)),
         word=choice(name("word"), WORDS, figure.word),
         label=text(name("label"), figure.label),
+        test=cast("TestKind", choice(name("test"), ("", *TEST_KINDS), figure.test)),
     )
 
 
@@ -147,7 +158,10 @@ def _texts(sheet: Sheet) -> list[FieldProblem]:
     named += [(arm_name_field(j), name) for j, name in enumerate(sheet.arms)]
     for i, outcome in enumerate(sheet.outcomes):
         named += [(outcome_field(i, part), getattr(outcome, part)) for part in ("name", "counted", "horizon")]
-    return [problem(name, "text_too_long", limit=TEXT_LIMIT) for name, value in named if len(value) > TEXT_LIMIT]
+    found = [problem(name, "text_too_long", limit=TEXT_LIMIT) for name, value in named if len(value) > TEXT_LIMIT]
+    if len(sheet.passage) > MOST:
+        found.append(problem("passage", "passage_too_long", limit=MOST, length=len(sheet.passage)))
+    return found
 
 
 def _number(name: str, spec: NumberField, typed: str) -> PrintedNumber | FieldProblem:

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections import Counter
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
 
 from app.appraisal.sheet import Trust
 from app.present.verdicts import (
@@ -29,7 +30,10 @@ _COUNTED = ("no", "one", "two", "three", "four", "five", "six", "seven", "eight"
 
 @dataclass(frozen=True, slots=True)
 class NumberNote:
-    """One note: what is printed, its verdict and why, and the working."""
+    """One note: what is printed, its verdict and why, and the working.
+
+    `places` are the numbers of the passage that it is about, `place` the same in words.
+    """
 
     what: str
     printed: str
@@ -39,6 +43,8 @@ class NumberNote:
     because: str
     notes: tuple[str, ...]
     working: tuple[str, ...]
+    places: tuple[int, ...] = ()
+    place: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -131,18 +137,38 @@ def _together(judged: list[Judgement], verdict: str, why: str) -> list[NumberNot
     return [NumberNote(what, ", ".join(texts), verdict, VERDICT_MARK[verdict], text, why, (), ())]
 
 
+def _placed(note: NumberNote, judged: list[Judgement], numbers: Mapping[str, int]) -> NumberNote:
+    """The note with the numbers that it is about have in the passage."""
+    places = tuple(sorted(numbers[j.claim.id] for j in judged if j.claim.id in numbers))
+    return replace(note, places=places, place=_in_words(places))
+
+
+def _in_words(places: tuple[int, ...]) -> str:
+    """Numbers as a list of runs: "1–4, 7"."""
+    runs: list[list[int]] = []
+    for place in places:
+        if runs and place == runs[-1][-1] + 1:
+            runs[-1].append(place)
+        else:
+            runs.append([place])
+    return ", ".join(str(run[0]) if len(run) == 1 else f"{run[0]}–{run[-1]}" for run in runs)
+
+
 _VERDICT_ORDER = ("does_not_agree", "agrees_under_another_reading", "agrees", "agrees_within_rounding", "cannot_be_checked")
 
 
-def numbers_view(check: OutcomeCheck, trust: Trust, names: Names) -> NumbersView:
+def numbers_view(check: OutcomeCheck, trust: Trust, names: Names, numbers: Mapping[str, int]) -> NumbersView:
     """The notes of one outcome."""
     bare = [j for j in check.judgements if _bare(j)]
     unlinked = [j for j in check.judgements if _unlinked(j)]
     rest = [j for j in check.judgements if j not in bare and j not in unlinked]
     rest.sort(key=lambda j: (_rank(j.verdict), CONSEQUENCES.index(j.consequence)))
-    notes = [_note(j, names) for j in rest]
-    notes += _together(bare, "agrees", "")
-    notes += _together(unlinked, "cannot_be_checked", "Nothing else typed bears on them.")
+    notes = [_placed(_note(j, names), [j], numbers) for j in rest]
+    notes += [_placed(note, bare, numbers) for note in _together(bare, "agrees", "")]
+    notes += [
+        _placed(note, unlinked, numbers)
+        for note in _together(unlinked, "cannot_be_checked", "Nothing else typed bears on them.")
+    ]
     tied = [j for j in check.judgements if "contradict_each_other" in j.findings]
     arms = list(dict.fromkeys(names.row(j.claim.arm) for j in tied))
     contradiction = "Counts and percentage contradict each other." if trust and check.set_aside else ""

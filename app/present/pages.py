@@ -2,68 +2,34 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
 from datetime import datetime
 
-from app.appraisal.fields import FIGURES, NUMBER_FIELDS, arm_field, arm_name_field, figure_field, outcome_field
+from app.appraisal.fields import FIGURES, NUMBER_FIELDS, outcome_field
 from app.appraisal.model import Appraisal
-from app.appraisal.sheet import CONFIDENCE_LEVELS, FIGURE_LEVELS, MOST_OUTCOMES, Sheet, TypedArm, TypedFigure, TypedOutcome
+from app.appraisal.sheet import CONFIDENCE_LEVELS, MOST_OUTCOMES, Sheet, TypedArm, TypedFigure, TypedOutcome
 from app.errors import FieldProblem
-from app.present.numerals import fixed
+from app.present.boxes import (
+    BASIS_TEXT,
+    PART_TEXT,
+    PLACE_TEXT,
+    ArmBoxes,
+    ChoiceView,
+    Fields,
+    FieldView,
+    FigureRow,
+    choice_view,
+    figure_row,
+)
+from app.present.passage import PassageView, claim_id, numbering, passage_view
 from app.present.results import ResultsView, results_view
+from app.present.verdicts import VERDICT_MARK, VERDICT_TEXT
 from app.present.wording import CAUTIONS, Names
 from app.printed.claims import ARMS
 from app.printed.number import PrintedNumber
-
-
-@dataclass(frozen=True, slots=True)
-class FieldView:
-    """A box: its name, label and typed text, and what is wrong with it or how it was read."""
-
-    name: str
-    label: str
-    value: str
-    example: str = ""
-    message: str = ""
-    hint: str = ""
-    refused: bool = False
-    focus: bool = False
-
-
-@dataclass(frozen=True, slots=True)
-class ChoiceView:
-    """A choice: its name and label, and its options as (value, text, chosen)."""
-
-    name: str
-    label: str
-    options: tuple[tuple[str, str, bool], ...]
-
-
-@dataclass(frozen=True, slots=True)
-class ArmBoxes:
-    """The row of boxes of one arm."""
-
-    key: str
-    role: str
-    shown_name: str
-    name: FieldView
-    numbers: tuple[FieldView, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class FigureRow:
-    """The boxes of one further number that the paper prints."""
-
-    key: str
-    legend: str
-    kind: ChoiceView
-    value: FieldView
-    limits: tuple[FieldView, ...]
-    level: ChoiceView | None
-    more: tuple[ChoiceView, ...]
-    label: FieldView
-    opened: bool
+from app.reading.read import Reading
 
 
 @dataclass(frozen=True, slots=True)
@@ -72,6 +38,17 @@ class TabView:
 
     text: str
     current: bool
+    place: int
+
+
+@dataclass(frozen=True, slots=True)
+class OutcomeLine:
+    """An outcome in the list of all: its counts as typed, and how many of its numbers got which verdict."""
+
+    name: str
+    current: bool
+    arms: tuple[str, ...]
+    verdicts: tuple[tuple[str, str, int], ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -116,6 +93,11 @@ class SheetView:
     follow_up: ChoiceView
     confidence_level: ChoiceView
     design: ChoiceView
+    passage: PassageView
+    passage_box: FieldView
+    arm_order: ChoiceView
+    assignable: tuple[tuple[str, str], ...]
+    list: tuple[OutcomeLine, ...]
     typed: tuple[str, ...]
     also: str
     columns: tuple[str, ...]
@@ -229,91 +211,42 @@ def _also(sheet: Sheet, shown: int) -> str:
     return f"Also on this sheet: {', '.join(others)}." if others else ""
 
 
-class _Fields:
-    """Makes the boxes of one sheet, each with its own problem."""
-
-    def __init__(
-        self, problems: Iterable[FieldProblem], needs: Iterable[FieldProblem], read_as: Mapping[str, PrintedNumber]
-    ) -> None:
-        self._needs = {problem.field: problem for problem in needs}
-        self._problems = {problem.field: problem for problem in problems}
-        self._read_as = read_as
-
-    def box(self, name: str, label: str, value: str, example: str = "") -> FieldView:
-        refused = self._problems.get(name)
-        shown = refused or self._needs.get(name)
-        message, hint = (shown.message, shown.hint) if shown else ("", "")
-        if shown is None and name in self._read_as:
-            read = self._read_as[name]
-            hint = f"read as {fixed(float(read.value), read.decimals)}"
-        return FieldView(name, label, value, example, message, hint, refused is not None)
-
-    def arm(self, index: int, outcome: int, name: str, typed: TypedArm) -> ArmBoxes:
-        role = ARMS[index].capitalize()
-        empty = not any(getattr(typed, spec.part) for spec in NUMBER_FIELDS)
-        boxes = tuple(
-            self.box(
-                arm_field(outcome, index, spec.part),
-                f"{role}: {spec.label.lower()}",
-                getattr(typed, spec.part),
-                spec.example if empty else "",
-            )
-            for spec in NUMBER_FIELDS
-        )
-        named = self.box(arm_name_field(index), f"Name of the {ARMS[index]} arm", name)
-        return ArmBoxes(ARMS[index], role, name.strip() or role, named, boxes)
+ORDER_TEXT = {"as_read": "as read: first is the intervention", "exchanged": "the other way round"}
+_TABS, _LISTED = 6, 3
 
 
-BASIS_TEXT = {
-    "unstated": "not said",
-    "crude": "crude (unadjusted)",
-    "adjusted": "adjusted",
-    "time_to_event": "time to event",
-    "clustered": "clusters allowed for",
-    "imputed": "missing filled in",
-    "matched": "matched",
-}
-PLACE_TEXT = {"": "not said", "abstract": "abstract", "text": "text", "table": "table", "figure": "figure"}
-ARM_TEXT = {"": "not said", "intervention": "intervention", "comparator": "comparator"}
-WORD_TEXT = {"": "none", "lower": "lower, fewer", "higher": "higher, more"}
-PART_TEXT = {"": "stands by itself", "component": "one component of it", "category": "one of several that exclude each other"}
+def _sources(sheet: Sheet, numbers: Mapping[str, int]) -> dict[str, tuple[int, str]]:
+    """Which number of the passage each box was filled from, and with what text."""
+    return {f"outcome-{f.outcome}-{f.part}": (numbers[claim_id(f)], f.text) for f in sheet.filled if claim_id(f) in numbers}
 
 
-def _figure_row(fields: _Fields, outcome: int, place: int, figure: TypedFigure) -> FigureRow:
-    kind = FIGURES[figure.kind]
-
-    def name(part: str) -> str:
-        return figure_field(outcome, figure.key, part)
-
-    def choice(part: str, label: str, texts: Mapping[str, str], chosen: str) -> ChoiceView:
-        return _choice(name(part), label, texts, chosen)
-
-    more = (
-        [choice("basis", "Crude or adjusted", BASIS_TEXT, figure.basis)] if kind.interval or kind.quantity == "p_value" else []
-    )
-    more += [choice("arm", "Arm", ARM_TEXT, figure.arm)] if kind.per_arm else []
-    more += [choice("word", "Word of direction", WORD_TEXT, figure.word)] if kind.interval else []
-    more.append(choice("place", "Printed in", PLACE_TEXT, figure.place))
-    limits = (
-        tuple(fields.box(name(part), label, getattr(figure, part)) for part, label in (("low", "From"), ("high", "To")))
-        if kind.interval
-        else ()
-    )
-    return FigureRow(
-        key=figure.key,
-        legend=f"Further number {place + 1}",
-        kind=choice("kind", "The paper also prints", {key: k.label for key, k in FIGURES.items()}, figure.kind),
-        value=fields.box(name("value"), "As printed", figure.value, kind.example),
-        limits=limits,
-        level=choice("level", "Level", {level: f"{level}%" for level in FIGURE_LEVELS}, figure.level) if limits else None,
-        more=tuple(more),
-        label=fields.box(name("label"), "What the paper calls it", figure.label),
-        opened=kind.per_arm or figure.basis != "unstated" or bool(figure.word or figure.place or figure.label),
+def _tabs(sheet: Sheet, shown: int) -> tuple[TabView, ...]:
+    """The first few outcomes, and the one shown; the list below has them all."""
+    return tuple(
+        TabView(o.name.strip() or f"Outcome {i + 1}", i == shown, i)
+        for i, o in enumerate(sheet.outcomes)
+        if i < _TABS or i == shown
     )
 
 
-def _choice(name: str, label: str, texts: Mapping[str, str], chosen: str) -> ChoiceView:
-    return ChoiceView(name, label, tuple((value, text, value == chosen) for value, text in texts.items()))
+def _list(sheet: Sheet, appraisal: Appraisal, shown: int) -> tuple[OutcomeLine, ...]:
+    """All outcomes, a line each, where there are several."""
+    if len(sheet.outcomes) < _LISTED:
+        return ()
+    lines = []
+    for i, (typed, found) in enumerate(zip(sheet.outcomes, appraisal.outcomes, strict=True)):
+        kinds: Counter[str] = Counter(j.verdict for j in found.check.judgements)
+        arms = tuple(_counts(arm) for arm in typed.arms)
+        verdicts = tuple((VERDICT_MARK[v], VERDICT_TEXT[v], kinds[v]) for v in VERDICT_MARK if kinds[v])
+        lines.append(OutcomeLine(typed.name.strip() or f"Outcome {i + 1}", i == shown, arms, verdicts))
+    return tuple(lines)
+
+
+def _counts(arm: TypedArm) -> str:
+    """What is typed of an arm: "46 / 418, 11.0%"."""
+    counts = " / ".join(part for part in (arm.events.strip(), arm.total.strip()) if part)
+    percentage = arm.percentage.strip().removesuffix("%").strip()
+    return ", ".join(part for part in (counts, f"{percentage}%" if percentage else "") if part)
 
 
 def sheet_view(
@@ -324,6 +257,8 @@ def sheet_view(
     problems: Iterable[FieldProblem],
     needs: Iterable[FieldProblem],
     read_as: Mapping[str, PrintedNumber],
+    reading: Reading,
+    assignable: Mapping[str, str],
     sheet_id: str,
     revision: int,
     writer: str,
@@ -334,10 +269,11 @@ def sheet_view(
     conflict: ConflictView | None = None,
 ) -> SheetView:
     """The whole page of one sheet, showing one of its outcomes."""
-    fields = _Fields(problems, needs, read_as)
+    numbers = numbering(sheet)
+    fields = Fields(problems, needs, read_as, _sources(sheet, numbers))
     outcome = sheet.outcomes[shown]
-    results = results_view(appraisal.outcomes[shown], names_of(sheet, shown))
-    tabs = tuple(TabView(o.name.strip() or f"Outcome {i + 1}", i == shown) for i, o in enumerate(sheet.outcomes))
+    results = results_view(appraisal.outcomes[shown], names_of(sheet, shown), numbers)
+    tabs = _tabs(sheet, shown)
     return SheetView(
         id=sheet_id,
         revision=revision,
@@ -357,21 +293,26 @@ def sheet_view(
         ),
         counted=fields.box(outcome_field(shown, "counted"), "What is counted (a noun)", outcome.counted, "a recurrence"),
         horizon=fields.box(outcome_field(shown, "horizon"), "Time it refers to", outcome.horizon, "12 months"),
-        event_is=_choice(outcome_field(shown, "event_is"), "The event is", EVENT_IS_TEXT, outcome.event_is),
-        follow_up=_choice(outcome_field(shown, "follow_up"), "Follow-up", FOLLOW_UP_TEXT, outcome.follow_up),
-        confidence_level=_choice(
+        event_is=choice_view(outcome_field(shown, "event_is"), "The event is", EVENT_IS_TEXT, outcome.event_is),
+        follow_up=choice_view(outcome_field(shown, "follow_up"), "Follow-up", FOLLOW_UP_TEXT, outcome.follow_up),
+        confidence_level=choice_view(
             "confidence_level", "Confidence level", {level: f"{level}%" for level in CONFIDENCE_LEVELS}, sheet.confidence_level
         ),
-        design=_choice("design", "Design", DESIGN_TEXT, sheet.design),
+        design=choice_view("design", "Design", DESIGN_TEXT, sheet.design),
+        passage=passage_view(sheet, reading, appraisal, shown),
+        passage_box=fields.box("passage", "Passage", sheet.passage),
+        arm_order=choice_view("arm_order", "In the passage, the arm named first is", ORDER_TEXT, sheet.arm_order),
+        assignable=tuple(assignable.items()),
+        list=_list(sheet, appraisal, shown),
         typed=_typed(sheet, shown),
         also=_also(sheet, shown),
         columns=tuple(spec.label for spec in NUMBER_FIELDS),
         arms=tuple(fields.arm(j, shown, sheet.arms[j], typed) for j, typed in enumerate(outcome.arms)),
-        figures=tuple(_figure_row(fields, shown, k, figure) for k, figure in enumerate(outcome.figures)),
-        trust=_choice(outcome_field(shown, "trust"), "Go by", {v: t for v, t, _ in results.numbers.trust}, outcome.trust)
+        figures=tuple(figure_row(fields, shown, k, figure) for k, figure in enumerate(outcome.figures)),
+        trust=choice_view(outcome_field(shown, "trust"), "Go by", {v: t for v, t, _ in results.numbers.trust}, outcome.trust)
         if results.numbers.trust
         else None,
-        part_of=_choice(outcome_field(shown, "part_of"), f"Beside “{_first_name(sheet)}” it is", PART_TEXT, outcome.part_of)
+        part_of=choice_view(outcome_field(shown, "part_of"), f"Beside “{_first_name(sheet)}” it is", PART_TEXT, outcome.part_of)
         if shown
         else None,
         results=results,

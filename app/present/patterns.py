@@ -8,7 +8,8 @@ from app import __version__
 from app.appraisal.examples import LEG_ULCER
 from app.appraisal.model import AppraisalInput, OutcomeInput
 from app.appraisal.run import appraise
-from app.present.pages import ChoiceView, FieldView, names_of
+from app.present.boxes import ChoiceView, FieldView
+from app.present.pages import names_of
 from app.present.results import ResultsView, results_view
 from app.printed.claims import ARMS, Claim, Quantity
 from app.printed.number import read_number

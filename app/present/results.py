@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from app.appraisal.model import BothArms, OutcomeAppraisal, Range, RiskAppraisal
@@ -133,10 +133,10 @@ def _p_values(both: BothArms) -> PView:
     return PView(_p_text(first, found, several=several) + agrees, tuple(_p_text(*other, several=several) for other in others))
 
 
-def results_view(outcome: OutcomeAppraisal, names: Names) -> ResultsView:
-    """All panels of one outcome."""
+def results_view(outcome: OutcomeAppraisal, names: Names, places: Mapping[str, int] | None = None) -> ResultsView:
+    """All panels of one outcome; `places` is the number of each claim in the passage."""
     notes = tuple(note_text(note, names) for note in outcome.notes)
-    numbers = numbers_view(outcome.check, outcome.input.trust, names)
+    numbers = numbers_view(outcome.check, outcome.input.trust, names, places or {})
     tables = _tables(outcome, names)
     both = outcome.both
     if both is None:

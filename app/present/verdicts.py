@@ -380,6 +380,9 @@ QUESTIONS: Mapping[str, str] = {
 }
 """What a reader is asked, by the slug of the question."""
 
+UNREAD_TEXT: Mapping[str, str] = {"not_understood": "not understood"}
+"""Why a number of a passage was not read, by slug."""
+
 
 def because(judged: Judgement, _check: OutcomeCheck | None = None) -> str:
     """Why a claim got its verdict."""

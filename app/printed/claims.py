@@ -94,13 +94,14 @@ def number_kind(quantity: Quantity) -> Kind:
 
 @dataclass(frozen=True, slots=True)
 class PrintedInterval:
-    """An interval as printed; a limit that is None is not given (a one-sided bound)."""
+    """An interval as printed; a limit that is None is not given (a one-sided bound). `span` is its place in a passage."""
 
     low: PrintedNumber | None
     high: PrintedNumber | None
     confidence_level: float = 0.95
     kind: IntervalKind = "confidence"
     level_assumed: bool = False
+    span: tuple[int, int] | None = None
 
     @property
     def limits(self) -> tuple[PrintedNumber | None, PrintedNumber | None]:

@@ -19,6 +19,7 @@ from app.printed.claims import (
 from app.reading.arms import totals_in, words_of_arms
 from app.reading.grammar import Mark
 from app.reading.marks import Estimate, Marked, marks_of
+from app.reading.naming import horizon_in, name_in
 from app.reading.sentences import sentence_of
 from app.reading.table import Table, table_of
 from app.reading.text import Even, even, is_table
@@ -42,6 +43,7 @@ class ReadOutcome:
 
     claims: tuple[Claim, ...]
     name: str | None = None
+    horizon: str | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -168,13 +170,30 @@ def _order(text: str, marks: list[Mark]) -> tuple[tuple[Arm, Arm], bool]:
     return ARMS, True
 
 
-def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], asked: set[Question]) -> ReadOutcome:
+@dataclass
+class _Known:
+    """What earlier outcomes of a passage have said: the order of its arms, and what is to be asked."""
+
+    order: tuple[Arm, Arm] | None = None
+    asked: set[Question] = field(default_factory=set)
+
+    def settle(self, order: tuple[Arm, Arm], *, assumed: bool) -> tuple[Arm, Arm]:
+        """The order to take: the one said, else that of the outcomes before, else asked about."""
+        if not assumed:
+            self.order = order
+        elif self.order is None:
+            self.asked.add("which_is_comparator")
+        return order if not assumed or self.order is None else self.order
+
+
+def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], known: _Known) -> ReadOutcome:
     text = write.even.text
     claims: list[Claim | None] = []
     marks = group.arms or group.rates or ([group.pair, group.pair] if group.pair else [])
-    order, assumed = _order(text, marks[:2]) if len(marks) >= 2 else (ARMS, False)
-    if assumed:
-        asked.add("which_is_comparator")
+    order: tuple[Arm, Arm] = ARMS
+    if len(marks) >= 2:
+        found, assumed = _order(text, marks[:2])
+        order = known.settle(found, assumed=assumed)
     start, end = sentence_of(text, group.start)
     kind: RiskKind | None = (
         "cumulative_incidence"
@@ -197,7 +216,9 @@ def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], a
     basis: Basis = next(iter(bases)) if len(bases) == 1 else "unstated"
     claims += measured
     claims += [p_claim(write, mark, basis) for mark in group.p_values]
-    return ReadOutcome(tuple(c for c in claims if c is not None))
+    name, horizon = name_in(text, start, group.start), horizon_in(text, start, end)
+    said = (replace(c, outcome=name, horizon=horizon) for c in claims if c is not None)
+    return ReadOutcome(tuple(said), name, horizon)
 
 
 def _earlier_totals(write: Writer, claims: list[Claim | None], totals: dict[Arm, tuple[int, int]]) -> list[Claim | None]:
@@ -270,9 +291,9 @@ def read(passage: str) -> Reading:
         return _read_table(text, table)
     marked = marks_of(text)
     write = Writer(text)
-    asked: set[Question] = set()
+    known = _Known()
     totals = totals_in(text.text, marked.taken)
     groups = _groups(marked, text.text)[:MOST_OUTCOMES]
-    outcomes = [_outcome(write, group, totals, asked) for group in groups]
+    outcomes = [_outcome(write, group, totals, known) for group in groups]
     kept = tuple(o for o in outcomes if len(o.claims) >= 2 or any(c.interval for c in o.claims))
-    return Reading(kept, _unread(write), tuple(sorted(asked)))
+    return Reading(kept, _unread(write), tuple(sorted(known.asked)))

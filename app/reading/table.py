@@ -103,11 +103,30 @@ def table_of(text: str) -> Table | None:
     rows = [row for start, line in lines[header_end:] if (row := _row(start, line, quantity, has_p=has_p)) is not None]
     if not rows:
         return None
-    words = words_of_arms(offset_header)
-    named_arms = list(dict.fromkeys(arm for _, arm in words))
-    order: tuple[Arm, Arm] = (
-        ("comparator", "intervention") if named_arms[:1] == ["comparator"] else ("intervention", "comparator")
-    )
     hits = list(_TOTAL.finditer(offset_header))
+    order, assumed = _order_of(offset_header, [hit.end() for hit in hits[:2]])
     totals = {arm: hit.span("total") for arm, hit in zip(order, hits, strict=False)} if len(hits) >= 2 else {}
-    return Table(order, not named_arms, totals, tuple(rows))
+    return Table(order, assumed, totals, tuple(rows))
+
+
+def _order_of(header: str, ends: list[int]) -> tuple[tuple[Arm, Arm], bool]:
+    """The order of the arms' columns by the words of the header, and whether that is only assumed.
+
+    `ends` are where the totals of the columns end. One arm named alone is of the column it stands in.
+    """
+    first: tuple[Arm, Arm] = ("intervention", "comparator")
+    second: tuple[Arm, Arm] = ("comparator", "intervention")
+    places: dict[Arm, int] = {}
+    for place, arm in words_of_arms(header):
+        places.setdefault(arm, place)
+    if len(places) == 2:
+        return (first if places["intervention"] < places["comparator"] else second), False
+    if not places:
+        return first, True
+    arm, place = next(iter(places.items()))
+    if len(ends) == 2:
+        later = place > ends[0]
+    else:
+        line = header[header.rfind("\n", 0, place) + 1 : place]
+        later = len(re.findall(r"[ ]{2,}|[\t|]", line.strip(" |"))) >= 2
+    return (first if (arm == "comparator") == later else second), False

@@ -11,7 +11,7 @@ MOST = 200_000
 """Longest passage read."""
 
 _MIDDLE_DOTS = "\u00b7\u2022\u2219\u22c5\ua78f\u0387"
-_BLANKS = "\u00a0\u2000\u2001\u2002\u2003\u2004\u2005\u2006\u2007\u2008\u200a\u205f\u3000\t\r"
+_BLANKS = "\u00a0\u2000\u2001\u2002\u2003\u2004\u2005\u2006\u2007\u2008\u200a\u205f\u3000\r"
 _NARROW = "\u2009\u202f"
 _HYPHENS = "\u2010\u2011\u2012"
 _DASHES = "\u2013\u2014\u2015"
@@ -56,6 +56,8 @@ def _even_character(character: str) -> str:
         return "\u00b7"
     if character in _BLANKS:
         return " "
+    if character == "\t":
+        return "  "  # columns stay apart
     if character in _NARROW:
         return "\u2009"
     if character in _HYPHENS:

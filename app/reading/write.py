@@ -109,7 +109,8 @@ def _interval(write: Writer, mark: Mark, quantity: Quantity) -> PrintedInterval 
         "credible" if "credible" in lead or "cri" in lead or "bci" in lead else "confidence"
     )
     level = level if 0.5 <= level < 1.0 else 0.95
-    return PrintedInterval(low, high, level, kind, level_assumed=not stated)
+    first, last = (write.even.span(*mark.parts[part]) for part in ("low", "high"))
+    return PrintedInterval(low, high, level, kind, level_assumed=not stated, span=(first[0], last[1]))
 
 
 def _unit(estimate: Estimate, quantity: Quantity, text: str) -> str:
@@ -162,6 +163,8 @@ def measure_claim(write: Writer, estimate: Estimate, sense: Sense | None) -> Cla
         if value is not None and estimate.interval is not None and plain and 0.1 < float(value.value) < 10:
             quantity, unit, basis = "risk_ratio", "proportion", "adjusted"  # adjusted relative risk
     interval = _interval(write, estimate.interval, quantity) if estimate.interval is not None else None
+    if interval is not None and interval.kind == "credible" and basis == "unstated":
+        basis = "adjusted"  # from a model with a prior
     return write.claim(estimate.mark, "value", quantity, None, unit, interval=interval, basis=basis, sense=sense, label=label)
 
 

@@ -15,6 +15,7 @@ from app import __version__
 from app.appraisal.run import appraise
 from app.appraisal.sheet import MOST_OUTCOMES, Sheet
 from app.errors import NotOnShelf, SaveConflict
+from app.intake.passage import ASSIGNABLE, reading_of
 from app.intake.sheet import gather, needs, sheet_from_form
 from app.present.pages import ConflictView, HomeView, SheetView, conflict_view, home_view, sheet_view, shelf_line
 from app.shelf.store import Kept, Shelf
@@ -88,6 +89,8 @@ class Desk:
             problems=gathered.problems,
             needs=needs(sheet, shown, gathered),
             read_as=gathered.read_as,
+            reading=reading_of(sheet.passage),
+            assignable=ASSIGNABLE,
             sheet_id=sheet_id,
             revision=kept.revision if kept else 0,
             writer=writer,
