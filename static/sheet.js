@@ -31,8 +31,8 @@
   let pasted = false;
   const passage = () => document.getElementById("passage");
   document.addEventListener("htmx:after:swap", () => {
-    for (const box of document.querySelectorAll("#sheet-form input[type=text]")) {
-      const given = box.getAttribute("value") ?? "";
+    for (const box of document.querySelectorAll("#sheet-form [data-given]")) {
+      const given = box.dataset.given;
       if (box !== document.activeElement && !since.has(box.name) && box.value !== given) box.value = given;
     }
     if (passage() && passage() === document.activeElement) passage().closest("details").open = !pasted;

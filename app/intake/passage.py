@@ -204,8 +204,14 @@ def fill(sheet: Sheet, passage: str, order: ArmOrder) -> Sheet:
     kept = {filled.outcome for filled in made}
     while len(outcomes) > 1 and outcomes[-1] == TypedOutcome() and len(outcomes) - 1 not in kept:
         outcomes.pop()
+    names = reading_of(passage).arm_names[:: -1 if order == "exchanged" else 1]
+    earlier = reading_of(sheet.passage).arm_names[:: -1 if sheet.arm_order == "exchanged" else 1]
+    arms = tuple(
+        new if (new or now == old) and now in ("", old) else now
+        for now, new, old in zip(sheet.arms, names, earlier, strict=True)
+    )
     by_hand = [moved for f in sheet.filled if f.row == BY_HAND and (moved := _found_again(f, passage)) is not None]
-    return replace(sheet, passage=passage, arm_order=order, outcomes=tuple(outcomes), filled=(*made, *by_hand))
+    return replace(sheet, arms=arms, passage=passage, arm_order=order, outcomes=tuple(outcomes), filled=(*made, *by_hand))
 
 
 def _paired(rows: list[_Slots], before: Mapping[int, list[Filled]]) -> dict[int, int]:

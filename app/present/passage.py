@@ -9,7 +9,7 @@ from typing import Literal
 
 from app.appraisal.model import Appraisal
 from app.appraisal.sheet import Filled, Sheet
-from app.present.verdicts import QUESTIONS, UNREAD_TEXT, VERDICT_TEXT
+from app.present.verdicts import QUESTIONS, REPAIR_TEXT, UNREAD_TEXT, VERDICT_TEXT
 from app.reading.read import Reading
 
 Kind = Literal["text", "mark", "elsewhere", "unread"]
@@ -89,7 +89,7 @@ def passage_view(sheet: Sheet, reading: Reading, appraisal: Appraisal, shown: in
         pieces=tuple(pieces),
         unread=tuple(UnreadView(f"assign-{u.span[0]}-{u.span[1]}", u.text, UNREAD_TEXT[u.why]) for u in unread[:40]),
         questions=tuple(QUESTIONS[slug] for slug in reading.questions),
-        repairs=(),
+        repairs=tuple(REPAIR_TEXT[slug] for slug in reading.repairs),
         exchangeable="which_is_comparator" in reading.questions or sheet.arm_order == "exchanged",
         summary=_summary(sheet, len(set(numbers.values())), len(unread), len(unplaced)),
     )

@@ -380,8 +380,19 @@ QUESTIONS: Mapping[str, str] = {
 }
 """What a reader is asked, by the slug of the question."""
 
-UNREAD_TEXT: Mapping[str, str] = {"not_understood": "not understood"}
+UNREAD_TEXT: Mapping[str, str] = {
+    "not_understood": "not understood",
+    "planned": "of what was planned",
+    "at_baseline": "of people at entry",
+}
 """Why a number of a passage was not read, by slug."""
+
+REPAIR_TEXT: Mapping[str, str] = {
+    "joined_words": "Words broken at a line’s end were joined.",
+    "marks": "Marks lost in copying, such as minus and equals signs, were put back: check the signs.",
+    "lost_points": "Decimal points lost in copying were put back: check the decimals.",
+}
+"""What was put right in the text of a passage before it was read."""
 
 
 def because(judged: Judgement, _check: OutcomeCheck | None = None) -> str:

@@ -54,7 +54,7 @@ _CI = (
     r"(?:confidence[ ]+(?:interval|limits)s?|credible[ ]+interval|Bayesian credible interval|C\.?I\.?|CrI|BCI|CL|IC|KI|BI|"
     r"intervalle de confiance|intervalo de confianza|Konfidenzintervall|betrouwbaarheidsinterval)"
 )
-_LEAD = rf"(?:one-sided[ ]+)?(?:{_LEVEL})?(?:Bayesian[ ]+)?{_CI}(?:[ ]*{_OPEN}(?:\d\d[ ]*%[ ]*)?[A-Z]{{2,3}}{_CLOSE})?(?:[ ]*(?:à|a|al|de)?[ ]*(?P<after>\d{{2}}(?:\.\d+)?)[ ]*%)?"
+_LEAD = rf"(?:one-sided[ ]+)?(?:{_LEVEL})?(?:Bayesian[ ]+)?{_CI}(?:[ ]*{_OPEN}(?:\d\d[ ]*%[ ]*)?[A-Z]{{2,3}}{_CLOSE})?(?:[ ]*(?:à|a|al|del|des|de|von|van)?[ ]*(?P<after>\d{{2}}(?:\.\d+)?)[ ]*%)?"
 
 INTERVAL = _rule(
     "interval",
@@ -73,6 +73,12 @@ P_VALUE = _rule(
     "P for interaction = 0.03",
     "P<0.001 for superiority",
 )
+BOUND = _rule(
+    "bound",
+    rf"(?P<side>upper|lower)[ ]+(?:confidence[ ]+)?(?:bound|limit)(?:[ ]+of(?:[ ]+the|[ ]+a)?)?(?:[ ]+(?:one|two|1|2)-sided)?[ ]*(?:{_LEVEL})?(?:{_CI})?[ ]*(?:[,:=]|was|is|of)?[ ]*(?P<value>{SIGNED})[ ]*(?P<unit>%|percentage points|points)?",
+    "upper bound of the one-sided 97.5% CI, 3.8",
+    "lower limit of the 95% confidence interval, -1.2",
+)
 MARGIN = _rule(
     "margin",
     rf"(?:non-?inferiority|equivalence)[ ]+margin(?:[ ]+(?:of|was|is))?[ ]*[,:=]?[ ]*(?P<value>{SIGNED})[ ]*(?P<unit>%|percentage points)?",
@@ -80,27 +86,27 @@ MARGIN = _rule(
 )
 
 LABELS: tuple[tuple[str, Quantity], ...] = (
-    (r"(?:adjusted[ ]+)?hazards?[ ]+ratio|aHR|HR", "hazard_ratio"),
-    (r"(?:adjusted[ ]+)?odds[ ]+ratio|aOR|OR|rapport de cotes|Odds-Ratio", "odds_ratio"),
-    (r"(?:incidence[ ]+)?rate[ ]+ratio|IRR", "rate_ratio"),
+    (r"(?:adjusted[ ]+)?hazards?[ -]?ratio|aHR|HR", "hazard_ratio"),
+    (r"(?:adjusted[ ]+)?odds[ -]?ratio|aOR|OR|rapport de cotes|razón de (?:momios|posibilidades|odds)", "odds_ratio"),
+    (r"(?:incidence[ ]+)?(?:incidence|rate)[ -]?ratio|IRR", "rate_ratio"),
     (
-        r"(?:adjusted[ ]+)?(?:relative[ ]+risk|risk[ ]+ratio)(?![ ]+(?:reduction|increase))|aRR|RR(?!R)|risque relatif|riesgo relativo|relatives? Risiko|relatief risico",
+        r"(?:adjusted[ ]+)?(?:relative[ ]+risk|risk[ ]+ratio)(?![ ]+(?:reduction|increase))|aRR|RR(?!R)|risque relatif|riesgo relativo|relatives?[ ]+Risiko|relatief risico",
         "risk_ratio",
     ),
     (r"relative[ ]+(?:risk[ ]+)?reduction|RRR|vaccine efficacy|efficacy", "relative_risk_reduction"),
     (r"relative[ ]+(?:risk[ ]+)?increase|RRI", "relative_risk_increase"),
     (
-        r"(?:absolute[ ]+)?(?:risk[ ]+)?difference(?:s)?(?:[ ]+in[ ]+(?:the[ ]+)?(?:risk|rates?|proportions?|percentages?))?|absolute[ ]+(?:risk[ ]+)?(?:reduction|increase)|ARR|RD|ARD",
+        r"(?:absolute[ ]+)?(?:risk[ ]+)?difference(?:s)?(?:[ ]+in[ ]+(?:the[ ]+)?(?:risk|rates?|proportions?|percentages?))?|absolute[ ]+(?:risk[ ]+)?(?:reduction|increase)|ARR|RD|ARD|diferencia de riesgos?|différence de risques?|Risikodifferenz|risicoverschil",
         "risk_difference",
     ),
     (r"numbers?[ ]+needed[ ]+to[ ]+(?:treat|harm)(?:[ ]+to[ ]+(?:benefit|harm))?|NNTB?|NNH", "number_needed_to_treat"),
 )
-_GAP = r"(?:[ ]*\([^()]{1,40}\)|[ ]*\[[^\[\]]{1,80}\])?(?:[ ]+(?:in|for|with|of|among|against|between|this|after)(?:[ ]+[A-Za-z\-]+){0,6}?)?[ ]*(?:[,:;=]|of|was|is|were|op|de|von)?[ ]*(?:of[ ]+)?"
+_GAP = r"(?:,?[ ]+(?:after adjustment|adjusted)[ ]+for[^.;:()\[\]]{1,80}?,)?(?:[ ]*\([^()]{1,40}\)|[ ]*\[[^\[\]]{1,80}\])?(?:[ ]+(?:in|for|with|of|among|against|between|this|after)(?:[ ]+[A-Za-z\-]+){0,9}?)?[ ]*(?:[,:;=]|of|was|is|were|op|de|von)?[ ]*(?:of[ ]+)?"
 MEASURES: tuple[tuple[Rule, Quantity], ...] = tuple(
     (
         _rule(
             f"measure_{quantity}",
-            rf"(?<![A-Za-z])(?P<label>{label})(?![A-Za-z]){_GAP}(?P<value>{SIGNED})(?![ ]*[/]|[ ]*of[ ]+\d)[ ]*(?P<unit>%|per cent|percentage points|points|per 1,?000)?",
+            rf"(?<![A-Za-z])(?P<label>{label})(?![A-Za-z]){_GAP}(?P<value>{SIGNED})(?![ ]*[/]|[ ]*of[ ]+\d)[ ]*(?P<unit>%|per cent|percentage points|points|puntos porcentuales|Prozentpunkte|procentpunt(?:en)?|points de pourcentage|per 1,?000)?",
         ),
         quantity,
     )
@@ -121,7 +127,7 @@ RATE = _rule(
 COUNTS: tuple[Rule, ...] = (
     _rule(
         "n_of_N_percent",
-        rf"(?P<events>{COUNT})[ ]*(?:/|of(?: the)?|out of(?: the)?|des|de los|von|van(?: de)?)[ ]*(?:the[ ]+)?(?P<total>{COUNT})(?P<people>[ ]+[A-Za-zéèàü\- ]{{2,40}}?)?[ ]*[,;]?[ ]*{_OPEN}?(?P<percent>{DECIMAL})[ ]*(?P<sign>%|per cent|percent)",
+        rf"(?P<events>{COUNT})(?:[ ]+(?:patients|participants|people|subjects|women|men|children|infants|adults|Patienten|pacientes|deelnemers|patiënten))?[ ]*(?:/|of(?: the)?|out of(?: the)?|des|de los|sur|von|van(?: de)?)[ ]*(?:the[ ]+)?(?P<total>{COUNT})(?P<people>[ ]+[A-Za-zéèàü\- ]{{2,40}}?)?[ ]*[,;]?[ ]*{_OPEN}?(?P<percent>{DECIMAL})[ ]*(?P<sign>%|per cent|percent)",
         "46 of 418 patients (11.0%)",
         "14/1,140 (1.2%)",
     ),
@@ -148,7 +154,7 @@ COUNTS: tuple[Rule, ...] = (
     ),
     _rule(
         "n_of_N",
-        rf"(?<![\d/.])(?P<events>{COUNT})[ ]*(?:/|(?:of|out of)(?: the)?[ ]+)[ ]*(?P<total>(?!0){COUNT})(?![ ]*/)",
+        rf"(?<![\d/.])(?P<events>{COUNT})(?:[ ]+(?:patients|participants|people|subjects|women|men|children|infants|adults|Patienten|pacientes|deelnemers|patiënten))?[ ]*(?:/|(?:of|out of|sur)(?: the)?[ ]+)[ ]*(?P<total>(?!0){COUNT})(?![ ]*/)",
         "15/268",
         "none of 32",
     ),
@@ -163,7 +169,11 @@ COUNTS: tuple[Rule, ...] = (
         rf"{_OPEN}(?P<events>{INTEGER})[ ]+(?:deaths?|events?|cases|patients|participants|people|women|men|children){_CLOSE}",
         "(252 deaths)",
     ),
-    _rule("percent", rf"(?P<percent>{DECIMAL})[ ]*(?P<sign>%|per cent|percent)", "86%"),
+    _rule(
+        "percent",
+        rf"(?P<percent>{DECIMAL})[ ]*(?P<sign>%|per cent|percent)(?![ ]*-?[ ]*(?:{_CI}|power|confidence)(?![A-Za-z]))",
+        "86%",
+    ),
 )
 TOTAL = _rule(
     "total",

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import re
 from bisect import bisect_left
+from collections import Counter
+from collections.abc import Iterator
 from dataclasses import dataclass, field, replace
 from functools import lru_cache
 from typing import Literal
@@ -19,11 +21,12 @@ from app.printed.claims import (
 from app.reading.arms import totals_in, words_of_arms
 from app.reading.grammar import Mark
 from app.reading.marks import Estimate, Marked, marks_of
-from app.reading.naming import horizon_in, name_in
-from app.reading.sentences import sentence_of
-from app.reading.table import Table, table_of
-from app.reading.text import Even, even, is_table
-from app.reading.write import Writer, arm_claims, basis_of, measure_claim, p_claim, rate_claim
+from app.reading.naming import arm_name_after, horizon_in, name_in
+from app.reading.rows import Table
+from app.reading.sentences import Aside, sentence_of
+from app.reading.table import in_rows, table_of
+from app.reading.text import Even, Repair, even, is_table
+from app.reading.write import Writer, arm_claims, basis_of, measure_claim, p_claim, rate_claims
 
 Question = Literal["which_is_comparator"]
 
@@ -53,6 +56,8 @@ class Reading:
     outcomes: tuple[ReadOutcome, ...]
     unread: tuple[Unread, ...]
     questions: tuple[Question, ...]
+    arm_names: tuple[str, str] = ("", "")
+    repairs: tuple[Repair, ...] = ()
 
 
 @dataclass
@@ -60,6 +65,8 @@ class _Group:
     """The marks of one outcome."""
 
     arms: list[Mark] = field(default_factory=list)
+    again: list[Mark] = field(default_factory=list)
+    order: tuple[Arm, Arm] | None = None
     pair: Mark | None = None
     rates: list[Mark] = field(default_factory=list)
     estimates: list[Estimate] = field(default_factory=list)
@@ -98,7 +105,7 @@ def _groups(marked: Marked, text: str) -> list[_Group]:
             now = _Group()
             groups.append(now)
         if kind == "arm":
-            now.arms.append(what)  # type: ignore[arg-type]
+            (now.again if len(now.arms) >= 2 else now.arms).append(what)  # type: ignore[arg-type]
         elif kind == "pair":
             now.pair = what  # type: ignore[assignment]
         elif kind == "rate":
@@ -107,7 +114,59 @@ def _groups(marked: Marked, text: str) -> list[_Group]:
             now.estimates.append(what)  # type: ignore[arg-type]
         else:
             now.p_values.append(what)  # type: ignore[arg-type]
-    return [g for g in groups if g.estimates or g.p_values or g.rates or (g.full and any("percent" in m.parts for m in g.arms))]
+    groups = [contrast for group in _with_third(groups, text) for contrast in group]
+    return [
+        g
+        for g in groups
+        if g.estimates or g.p_values or g.rates or (g.full and any("percent" in m.parts for m in g.arms + g.again))
+    ]
+
+
+def _with_third(groups: list[_Group], text: str) -> Iterator[list[_Group]]:
+    """Groups as they are, but two arms and a third in one sentence as a contrast each against the comparator."""
+    i = 0
+    while i < len(groups):
+        now, after = groups[i], groups[i + 1] if i + 1 < len(groups) else None
+        if after is None or not _is_third(now, after, text):
+            yield [now]
+            i += 1
+            continue
+        estimates, p_values, i = list(after.estimates), list(after.p_values), i + 2
+        while i < len(groups) and not groups[i].arms and not groups[i].pair and not groups[i].rates:
+            estimates += groups[i].estimates
+            p_values += groups[i].p_values
+            i += 1
+        yield _contrasts([*now.arms, *after.arms], estimates, p_values, text)
+
+
+def _is_third(now: _Group, after: _Group, text: str) -> bool:
+    """Whether a lone arm belongs to the two before it: one sentence, all printed alike, nothing between them."""
+    if len(now.arms) != 2 or len(after.arms) != 1 or now.estimates or now.p_values or now.again or after.rates:
+        return False
+    start, end = sentence_of(text, now.start)
+    alike = {frozenset(mark.parts) & {"events", "total", "percent"} for mark in (*now.arms, *after.arms)}
+    return len(alike) == 1 and start <= after.arms[0].start < end
+
+
+def _contrasts(arms: list[Mark], estimates: list[Estimate], p_values: list[Mark], text: str) -> list[_Group]:
+    """Each arm against the one that words call the comparator, else the last; estimates and p in the order of the arms."""
+    ends = [*(mark.start for mark in arms[1:]), arms[-1].end + 60]
+    named = [i for i, mark in enumerate(arms) if any(arm == "comparator" for _, arm in words_of_arms(text[mark.end : ends[i]]))]
+    reference = named[0] if len(named) == 1 else len(arms) - 1
+    others = [mark for i, mark in enumerate(arms) if i != reference]
+    found = [_Group(arms=[mark, arms[reference]], order=ARMS) for mark in others]
+    seen: Counter[str] = Counter()
+    for estimate in estimates:
+        k = seen[str(estimate.mark.quantity)]
+        seen[str(estimate.mark.quantity)] += 1
+        if k < len(found):
+            found[k].estimates.append(estimate)
+    for k, mark in enumerate(p_values):
+        before = [i for i, group in enumerate(found) if any(e.mark.start < mark.start for e in group.estimates)]
+        of = before[-1] if before else k
+        if of < len(found) and not found[of].p_values:
+            found[of].p_values.append(mark)
+    return found
 
 
 def _begins(now: _Group, kind: str, what: object, text: str) -> bool:
@@ -115,6 +174,8 @@ def _begins(now: _Group, kind: str, what: object, text: str) -> bool:
     place = what.mark.start if isinstance(what, Estimate) else what.start  # type: ignore[attr-defined]
     other_sentence = now.start < sentence_of(text, place)[0] if (now.arms or now.pair or now.estimates or now.rates) else False
     if kind in ("arm", "pair"):
+        if kind == "arm" and _percent_again(now, what, other_sentence=other_sentence):  # type: ignore[arg-type]
+            return False
         beside_rates = bool(now.rates) and len(now.arms) < 2 and not other_sentence
         return (now.full and not beside_rates) or (bool(now.estimates) and other_sentence)
     if kind == "rate":
@@ -123,6 +184,12 @@ def _begins(now: _Group, kind: str, what: object, text: str) -> bool:
         same = [e for e in now.estimates if e.mark.quantity == what.mark.quantity]  # type: ignore[attr-defined]
         return bool(same) and basis_of(same[-1], text) == basis_of(what, text)  # type: ignore[arg-type]
     return bool(now.p_values) and other_sentence
+
+
+def _percent_again(now: _Group, what: Mark, *, other_sentence: bool) -> bool:
+    """Whether a percentage is of two arms whose counts stand before it: "71/94 and 52/97, respectively (76% v 54%)"."""
+    bare = set(what.parts) <= {"percent", "sign"} and not any("percent" in mark.parts for mark in now.arms)
+    return bare and len(now.arms) == 2 and len(now.again) < 2 and not now.estimates and not other_sentence
 
 
 _CUMULATIVE = re.compile(r"kaplan|cumulative incidence|incidence was|survival", re.IGNORECASE)
@@ -176,6 +243,7 @@ class _Known:
 
     order: tuple[Arm, Arm] | None = None
     asked: set[Question] = field(default_factory=set)
+    names: dict[Arm, str] = field(default_factory=dict)
 
     def settle(self, order: tuple[Arm, Arm], *, assumed: bool) -> tuple[Arm, Arm]:
         """The order to take: the one said, else that of the outcomes before, else asked about."""
@@ -190,24 +258,27 @@ def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], k
     text = write.even.text
     claims: list[Claim | None] = []
     marks = group.arms or group.rates or ([group.pair, group.pair] if group.pair else [])
-    order: tuple[Arm, Arm] = ARMS
-    if len(marks) >= 2:
+    order = group.order or ARMS
+    if len(marks) >= 2 and group.order is None:
         found, assumed = _order(text, marks[:2])
         order = known.settle(found, assumed=assumed)
+        names = [arm_name_after(text, mark.end) for mark in marks[:2]]
+        if not known.names and names[0] and names[1] and names[0] != names[1]:
+            known.names = dict(zip(order, (names[0], names[1]), strict=True))
     start, end = sentence_of(text, group.start)
     kind: RiskKind | None = (
         "cumulative_incidence"
         if _CUMULATIVE.search(text, start, end) and not any("events" in m.parts for m in group.arms)
         else None
     )
-    for mark, arm in zip(group.arms, order, strict=False):
+    for mark, arm in (*zip(group.arms, order, strict=False), *zip(group.again, order, strict=False)):
         claims += arm_claims(write, mark, arm, kind)
     if group.pair is not None:
         claims += [
             write.claim(group.pair, part, "events", arm, "people") for part, arm in zip(("first", "second"), order, strict=True)
         ]
     for mark, arm in zip(group.rates, order, strict=False):
-        claims.append(rate_claim(write, mark, arm))
+        claims += rate_claims(write, mark, arm)
     if marks:
         claims += _earlier_totals(write, claims, totals)
     sense = _sense(text, group)
@@ -215,8 +286,11 @@ def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], k
     bases = {c.basis for c in measured if c is not None}
     basis: Basis = next(iter(bases)) if len(bases) == 1 else "unstated"
     claims += measured
-    claims += [p_claim(write, mark, basis) for mark in group.p_values]
-    name, horizon = name_in(text, start, group.start), horizon_in(text, start, end)
+    placed = [(e.mark.start, c.basis) for e, c in zip(group.estimates, measured, strict=True) if c is not None]
+    for mark in group.p_values:
+        before = [own for place, own in placed if place < mark.start] if len(bases) > 1 else []
+        claims.append(p_claim(write, mark, before[-1] if before else basis))
+    name, horizon = name_in(text, start, group.start), horizon_in(text, start, group.start)
     said = (replace(c, outcome=name, horizon=horizon) for c in claims if c is not None)
     return ReadOutcome(tuple(said), name, horizon)
 
@@ -239,13 +313,17 @@ _LEFT_ALONE = re.compile(
 _ANY_NUMBER = re.compile(r"(?<![\w.])\d+(?:[.,]\d+)*")
 
 
-def _unread(write: Writer) -> tuple[Unread, ...]:
+def _unread(write: Writer, aside: tuple[tuple[int, int, Aside], ...] = ()) -> tuple[Unread, ...]:
     text = write.even.text
     known = bytearray(len(text))
     for start, end in (*write.read, *(hit.span() for hit in _LEFT_ALONE.finditer(text))):
         known[start:end] = b"\x01" * (end - start)
     hits = [hit.span() for hit in _ANY_NUMBER.finditer(text) if not any(known[hit.start() : hit.end()])]
-    return tuple(Unread(write.even.span(*span), write.even.printed(*span), "not_understood") for span in hits)
+
+    def why(place: int) -> str:
+        return next((slug for start, end, slug in aside if start <= place < end), "not_understood")
+
+    return tuple(Unread(write.even.span(*span), write.even.printed(*span), why(span[0])) for span in hits)
 
 
 def _read_table(passage: Even, table: Table) -> Reading:
@@ -256,7 +334,7 @@ def _read_table(passage: Even, table: Table) -> Reading:
         claims: list[Claim | None] = []
         for mark, arm in zip(row.arms, table.order, strict=True):
             claims += arm_claims(write, mark, arm, None)
-        claims += _earlier_totals(write, claims, table.totals)
+        claims += _earlier_totals(write, claims, row.totals or table.totals)
         if row.estimate is not None:
             claims.append(measure_claim(write, row.estimate, None))
         if row.p_value is not None:
@@ -265,7 +343,7 @@ def _read_table(passage: Even, table: Table) -> Reading:
         outcomes.append(ReadOutcome(named, row.name or None))
     write.read += [hit.span() for hit in re.finditer(r"[^\n]*\n", passage.text) if hit.end() <= table.rows[0].start]
     asked: tuple[Question, ...] = ("which_is_comparator",) if table.assumed else ()
-    return Reading(tuple(outcomes), _unread(write), asked)
+    return Reading(tuple(outcomes), _unread(write), asked, repairs=passage.repairs)
 
 
 MOST_OUTCOMES = 200
@@ -285,7 +363,7 @@ def read(passage: str) -> Reading:
     Reading
         Outcomes with two or more claims that bear on each other; numbers not understood; what is asked.
     """
-    text = even(passage)
+    text = in_rows(even(passage))
     table = table_of(text.text) if is_table(text.text) else None
     if table is not None:
         return _read_table(text, table)
@@ -296,4 +374,10 @@ def read(passage: str) -> Reading:
     groups = _groups(marked, text.text)[:MOST_OUTCOMES]
     outcomes = [_outcome(write, group, totals, known) for group in groups]
     kept = tuple(o for o in outcomes if len(o.claims) >= 2 or any(c.interval for c in o.claims))
-    return Reading(kept, _unread(write), tuple(sorted(known.asked)))
+    return Reading(
+        kept,
+        _unread(write, marked.aside),
+        tuple(sorted(known.asked)),
+        (known.names.get("intervention", ""), known.names.get("comparator", "")),
+        text.repairs,
+    )

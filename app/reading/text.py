@@ -6,6 +6,7 @@ import re
 import unicodedata
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Literal
 
 MOST = 200_000
 """Longest passage read."""
@@ -19,7 +20,19 @@ _GONE = "\u00ad\u200b\u200c\u200d\ufeff\u2060"
 _QUOTES = {"\u2018": "'", "\u2019": "'", "\u201c": '"', "\u201d": '"'}
 _BROKEN = re.compile(r"(?<=[A-Za-z])-\n[ ]*(?=[a-z])")
 _DECIMAL_COMMA = re.compile(r"(?<![\d.,])\d{1,3},\d{1,2}(?!\d)\s*%|[pP]\s*[=<>]\s*0,\d|(?<!\d)\d,\d{1,2}\s*[-;–]\s*\d,\d")
-_DECIMAL_POINT = re.compile(r"\d\.\d")
+_DECIMAL_POINT = re.compile(r"(?<![\d.])\d+\.(?!\d{3}(?!\d))\d")
+_THOUSANDS_POINT = re.compile(r"(?<=\d)\.(?=\d{3}(?!\d))")
+_TORN = {
+    "\u03ea": "\u2212", "\uf02d": "\u2212", "\u03ed": "=", "\uf03d": "=", "\u03fd": "<", "\uf03c": "<",
+    "\u03fe": ">", "\uf03e": ">", "\u03e9": "+", "\uf02b": "+", "\u0545": "\u2264", "\uf0a3": "\u2264",
+    "\u0546": "\u2265", "\uf0b3": "\u2265", "\u2424": "\u2212",
+}  # fmt: skip
+"""Marks that symbol fonts leave behind when text is copied out of a page."""
+_LOST_POINT = re.compile(r"[pP]\s*[=<>]\s*0 \d{2,4}(?![\d.])")
+_WAS_POINT = re.compile(r"(?<![\d.,·])(\d{1,2}) (\d{1,4})(?=[ ]?%|[\])}};,–−-]|\s+to\s|\.?$|\.\s)")
+
+Repair = Literal["joined_words", "marks", "lost_points"]
+"""What was put right in text torn from a page."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -31,6 +44,7 @@ class Even:
     starts: Sequence[int]
     ends: Sequence[int]
     decimal_comma: bool
+    repairs: tuple[Repair, ...] = ()
 
     def span(self, start: int, end: int) -> tuple[int, int]:
         """Where a stretch of the even text stands in the raw text."""
@@ -66,8 +80,8 @@ def _even_character(character: str) -> str:
         return "\u2013"
     if character in _GONE:
         return ""
-    if character in _QUOTES:
-        return _QUOTES[character]
+    if character in _QUOTES or character in _TORN:
+        return _QUOTES.get(character) or _TORN[character]
     if ord(character) < 128 or character in "\u2212\u2264\u2265\u221e\u2013":
         return character
     plain = unicodedata.normalize("NFKC", character)
@@ -97,11 +111,18 @@ def even(raw: str) -> Even:
 
 
 def _even(raw: str, text: str, starts: Sequence[int], ends: Sequence[int]) -> Even:
-    """The decimal mark and the line ends made even; neither moves a character."""
+    """The decimal mark and the line ends made even, and lost points put back; none of it moves a character."""
+    repairs: list[Repair] = ["joined_words"] if _BROKEN.search(raw) else []
+    if any(mark in raw for mark in _TORN):
+        repairs.append("marks")
     if not is_table(text):
         text = text.replace("\n", " ")
     comma = bool(_DECIMAL_COMMA.search(text)) and not _DECIMAL_POINT.search(text)
     text = re.sub(r"(?<=\d)\u00b7(?=\d)|(?<![\w])\u00b7(?=\d)", ".", text)
     if comma:
+        text = _THOUSANDS_POINT.sub("\u2009", text)
         text = re.sub(r"(?<=\d),(?=\d)", ".", text)
-    return Even(raw, text, starts, ends, comma)
+    elif _LOST_POINT.search(text) and not _DECIMAL_POINT.search(text):
+        text = _WAS_POINT.sub(r"\1.\2", text)
+        repairs.append("lost_points")
+    return Even(raw, text, starts, ends, comma, tuple(repairs))

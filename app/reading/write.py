@@ -96,6 +96,8 @@ def p_claim(write: Writer, mark: Mark, basis: Basis) -> Claim | None:
 
 def _interval(write: Writer, mark: Mark, quantity: Quantity) -> PrintedInterval | None:
     text = write.even.text
+    if mark.rule == "bound":
+        return _bound(write, mark, quantity)
     low, high = (write.number(*mark.parts[part], quantity) for part in ("low", "high"))
     if low is None or high is None:
         return None
@@ -111,6 +113,20 @@ def _interval(write: Writer, mark: Mark, quantity: Quantity) -> PrintedInterval 
     level = level if 0.5 <= level < 1.0 else 0.95
     first, last = (write.even.span(*mark.parts[part]) for part in ("low", "high"))
     return PrintedInterval(low, high, level, kind, level_assumed=not stated, span=(first[0], last[1]))
+
+
+def _bound(write: Writer, mark: Mark, quantity: Quantity) -> PrintedInterval | None:
+    """One limit alone, with the level it is printed at."""
+    text = write.even.text
+    limit = write.number(*mark.parts["value"], quantity)
+    if limit is None:
+        return None
+    write.read.append(mark.parts["value"])
+    stated = [mark.text(text, part) for part in ("level", "after") if part in mark.parts]
+    level = float(stated[0]) / 100 if stated else 0.95
+    low, high = (None, limit) if mark.text(text, "side").lower() == "upper" else (limit, None)
+    span = write.even.span(*mark.parts["value"])
+    return PrintedInterval(low, high, level if 0.5 <= level < 1.0 else 0.95, level_assumed=not stated, span=span)
 
 
 def _unit(estimate: Estimate, quantity: Quantity, text: str) -> str:
@@ -168,9 +184,13 @@ def measure_claim(write: Writer, estimate: Estimate, sense: Sense | None) -> Cla
     return write.claim(estimate.mark, "value", quantity, None, unit, interval=interval, basis=basis, sense=sense, label=label)
 
 
-def rate_claim(write: Writer, mark: Mark, arm: Arm) -> Claim | None:
-    """A rate over person-time, or a risk per so many people."""
+def rate_claims(write: Writer, mark: Mark, arm: Arm) -> Iterator[Claim | None]:
+    """A rate over person-time, or a risk per so many people, with the events and person-time that stand before it."""
     text = write.even.text
+    if "events" in mark.parts:
+        yield write.claim(mark, "events", "events", arm, "people")
+    if "time" in mark.parts:
+        yield write.claim(mark, "time", "person_time", arm, "person_years")
     per = mark.text(text, "per").replace(",", "").replace(" ", "")
     timed = re.search(r"year|month|day|pyr", mark.text(text, "what"), re.IGNORECASE)
-    return write.claim(mark, "value", "rate" if timed else "risk", arm, f"per_{per}_person_years" if timed else f"per_{per}")
+    yield write.claim(mark, "value", "rate" if timed else "risk", arm, f"per_{per}_person_years" if timed else f"per_{per}")

@@ -43,7 +43,8 @@ def test_frozen_sample_still_opens(path: Path) -> None:
     sheet = decode(path.read_text())
     assert sheet.title == LEG_ULCER.title
     assert sheet.outcomes[0].arms[1].percentage == "16·4%"
-    assert len(sheet.outcomes[0].figures) == (3 if path.name == "sheet-3.json" else 0)
+    assert len(sheet.outcomes[0].figures) == {"sheet-3.json": 3, "sheet-4.json": 2}.get(path.name, 0)
+    assert bool(sheet.passage and sheet.filled) == (path.name == "sheet-4.json")
 
 
 @pytest.mark.parametrize(

@@ -23,6 +23,7 @@ LABELS: dict[str, Quantity] = {
     "ARR": "risk_difference",
     "RRR": "relative_risk_reduction",
     "NNT": "number_needed_to_treat",
+    "IRR": "rate_ratio",
 }
 UNITS = {"pp": "points", "%": "percent"}
 
