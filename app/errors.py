@@ -46,6 +46,14 @@ class InputProblems(ArmslengthError):
         super().__init__("; ".join(f"{p.field}: {p.message}" for p in self.problems))
 
 
+class UnreadablePages(ArmslengthError):
+    """A PDF that gives no text: `slug` says why."""
+
+    def __init__(self, slug: str) -> None:
+        self.slug = slug
+        super().__init__(slug)
+
+
 class NotOnShelf(ArmslengthError):
     """No sheet has this id."""
 

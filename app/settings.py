@@ -12,11 +12,12 @@ DEFAULT_PORT = 8714
 class Settings:
     """Where the shelf lies, and what the server allows.
 
-    `body_limit` is in bytes. `patterns` mounts the pattern page, for the tests only.
+    `body_limit` is in bytes, `upload_limit` that of a PDF. `patterns` mounts the pattern page, for the tests only.
     """
 
     data_dir: Path
     body_limit: int = 3_000_000
+    upload_limit: int = 60_000_000
     patterns: bool = False
 
     @property

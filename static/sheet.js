@@ -25,20 +25,30 @@
   const since = new Set();
   document.addEventListener("input", (event) => {
     since.add(event.target.name);
-    if (event.target.id === "passage") pasted = event.inputType === "insertFromPaste";
+    if (event.target.id !== "passage") return;
+    changed = true;
+    pasted = event.inputType === "insertFromPaste";
   });
   document.addEventListener("htmx:before:request", () => since.clear());
-  let pasted = false;
+  let changed = false, pasted = false;
   const passage = () => document.getElementById("passage");
   document.addEventListener("htmx:after:swap", () => {
     for (const box of document.querySelectorAll("#sheet-form [data-given]")) {
       const given = box.dataset.given;
       if (box !== document.activeElement && !since.has(box.name) && box.value !== given) box.value = given;
     }
-    if (passage() && passage() === document.activeElement) passage().closest("details").open = !pasted;
+    if (!changed || !passage()) return;
+    changed = passage() === document.activeElement && !pasted;
+    passage().closest("details").open = changed || !document.getElementById("passage-read");
   });
-  document.addEventListener("focusout", (event) => {
-    if (event.target.id === "passage" && document.getElementById("passage-read")) event.target.closest("details").open = false;
+  // A PDF dropped on the sheet is opened like one chosen.
+  document.addEventListener("dragover", (event) => { if (document.getElementById("open-paper")) event.preventDefault(); });
+  document.addEventListener("drop", (event) => {
+    const form = document.getElementById("open-paper"), files = event.dataTransfer?.files;
+    if (!form || !files?.length) return;
+    event.preventDefault();
+    form.elements.paper.files = files;
+    form.submit();
   });
   addEventListener("pagehide", () => {
     if (!typed || !form()) return;

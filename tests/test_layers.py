@@ -35,6 +35,7 @@ OUTSIDE: dict[str, set[str]] = {
     "latex2mathml": {"present"},
     "fastapi": {"web", "api", "server"},
     "starlette": {"web", "api", "server"},
+    "pypdfium2": {"reading"},
     "pydantic": {"api"},
     "uvicorn": {"cli"},
     "typer": {"cli"},

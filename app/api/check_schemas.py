@@ -173,6 +173,7 @@ class ReadAnswer(Shape):
     outcomes: list[ReadOutcomeShape]
     unread: list[UnreadShape]
     questions: list[QuestionShape]
+    repairs: list[QuestionShape]
     version: str
 
 
@@ -182,4 +183,5 @@ class CheckAnswer(Shape):
     outcomes: list[CheckedOutcomeShape]
     unread: list[UnreadShape]
     questions: list[QuestionShape]
+    repairs: list[QuestionShape]
     version: str

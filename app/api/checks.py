@@ -8,7 +8,8 @@ from typing import Any
 
 from app.api.answers import Json, versioned
 from app.intake.claims import CheckInput, NamedOutcome
-from app.present.verdicts import QUESTIONS, because
+from app.present.asked import QUESTIONS, REPAIR_TEXT
+from app.present.verdicts import because
 from app.printed.claims import Claim, PrintedInterval
 from app.printed.number import PrintedNumber
 from app.reading.read import Reading
@@ -155,6 +156,7 @@ def check_answer(given: CheckInput) -> Json:
         outcomes=[_outcome(outcome, check) for outcome, check in zip(given.outcomes, checks, strict=True)],
         unread=_unread(given.reading),
         questions=_questions((*(given.reading.questions if given.reading else ()), *questions)),
+        repairs=_repairs(given.reading),
     )
 
 
@@ -166,10 +168,16 @@ def _questions(slugs: Iterable[str]) -> list[Json]:
     return [{"slug": slug, "text": QUESTIONS[slug]} for slug in slugs]
 
 
+def _repairs(reading: Reading | None) -> list[Json]:
+    """What was put right in the passage before it was read."""
+    return [{"slug": slug, "text": REPAIR_TEXT[slug]} for slug in reading.repairs] if reading else []
+
+
 def read_answer(found: Reading) -> Json:
     """The answer of /read."""
     return versioned(
         outcomes=[{"name": o.name, "horizon": o.horizon, "claims": [claim_json(c) for c in o.claims]} for o in found.outcomes],
         unread=_unread(found),
         questions=_questions(found.questions),
+        repairs=_repairs(found),
     )

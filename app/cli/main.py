@@ -49,6 +49,7 @@ def _show_version(asked: bool) -> None:
 
 @application.callback(invoke_without_command=True)
 def serve(
+    context: typer.Context,
     port: Annotated[int | None, typer.Option(min=0, max=65535, help="Port to listen on; a taken one is an error.")] = None,
     open_browser: Annotated[bool, typer.Option("--open/--no-open", help="Open the browser.")] = True,
     data: Annotated[Path | None, typer.Option(help="Folder of the shelf.")] = None,
@@ -57,6 +58,8 @@ def serve(
     ] = False,
 ) -> None:
     """Serve Armslength to this computer's browser until Ctrl-C."""
+    if context.invoked_subcommand is not None:
+        return
     import uvicorn  # heavy; not needed for --help
 
     from app.server.application import create_app
@@ -81,6 +84,16 @@ def serve(
     with contextlib.suppress(KeyboardInterrupt):
         uvicorn.Server(config).run(sockets=[bound])
     typer.echo("Armslength has ended.")
+
+
+@application.command("check", help="Check every number of a passage, from a file or standard input.")
+def _check(
+    source: Annotated[str, typer.Argument(help="A text file, or - for standard input.")] = "-",
+    as_json: Annotated[bool, typer.Option("--json", help="Print what the JSON interface answers.")] = False,
+) -> None:
+    from app.cli.check import check  # heavy; not needed to serve
+
+    check(source, as_json=as_json)
 
 
 def main() -> None:

@@ -26,7 +26,7 @@ from app.appraisal.sheet import (
 )
 from app.errors import PrintedProblem
 from app.intake.figures import MOST_FIGURES
-from app.printed.claims import ARMS, Claim, number_kind
+from app.printed.claims import ARMS, PLACES, Claim, number_kind
 from app.printed.number import Kind, PrintedNumber, read_number
 from app.reading.read import Reading, ReadOutcome
 from app.reading.read import read as read_passage
@@ -289,6 +289,22 @@ def _found_again(filled: Filled, passage: str) -> Filled | None:
         return None
     start = min(places, key=lambda place: abs(place - filled.start))
     return replace(filled, start=start, end=start + len(filled.text))
+
+
+def with_parts(sheet: Sheet, form: Mapping[str, str]) -> Sheet:
+    """The sheet with parts of a paper at the end of its passage, each under the name of the place it stands in.
+
+    `only` names one part, else those ticked are taken.
+    """
+    numbers = [int(name[5:]) for name in form if re.fullmatch(r"take-\d{1,4}", name)]
+    if re.fullmatch(r"\d{1,4}", form.get("only", "")):
+        numbers = [int(form["only"])]
+    parts = [sheet.passage.rstrip()]
+    for number in sorted(numbers):
+        text, place = form.get(f"text-{number}", "").strip(), form.get(f"place-{number}", "")
+        tag = f"[{place.capitalize()}] " if place in PLACES and place != "table" else ""
+        parts.append(f"{tag}{text}" if text else "")
+    return fill(sheet, "\n\n".join(part for part in parts if part).replace("\r\n", "\n"), sheet.arm_order)
 
 
 # -- by hand ---------------------------------------------------------------------------------------------------

@@ -7,11 +7,11 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
 from app.appraisal.sheet import Trust
+from app.present.asked import QUESTIONS
 from app.present.verdicts import (
     CONSEQUENCE_TEXT,
     NARROW_TEXT,
     QUANTITY_TEXT,
-    QUESTIONS,
     VERDICT_MARK,
     VERDICT_TEXT,
     because,

@@ -9,7 +9,8 @@ from typing import Literal
 
 from app.appraisal.model import Appraisal
 from app.appraisal.sheet import Filled, Sheet
-from app.present.verdicts import QUESTIONS, REPAIR_TEXT, UNREAD_TEXT, VERDICT_TEXT
+from app.present.asked import QUESTIONS, REPAIR_TEXT, UNREAD_TEXT
+from app.present.verdicts import VERDICT_TEXT
 from app.reading.read import Reading
 
 Kind = Literal["text", "mark", "elsewhere", "unread"]

@@ -373,27 +373,6 @@ _PARTS: Mapping[str, str] = {
     "groups_exceed_all": "The groups that exclude each other hold more people together than there are.",
 }
 
-QUESTIONS: Mapping[str, str] = {
-    "crude_or_adjusted": "Is the estimate adjusted, stratified or from a model? It fits the counts only if it is.",
-    "which_is_comparator": "Which group is the comparator? The one named first is taken as the intervention.",
-    "which_test_gave_p": "Which test gave the P? It and the interval stand on different sides of 0.05.",
-}
-"""What a reader is asked, by the slug of the question."""
-
-UNREAD_TEXT: Mapping[str, str] = {
-    "not_understood": "not understood",
-    "planned": "of what was planned",
-    "at_baseline": "of people at entry",
-}
-"""Why a number of a passage was not read, by slug."""
-
-REPAIR_TEXT: Mapping[str, str] = {
-    "joined_words": "Words broken at a line’s end were joined.",
-    "marks": "Marks lost in copying, such as minus and equals signs, were put back: check the signs.",
-    "lost_points": "Decimal points lost in copying were put back: check the decimals.",
-}
-"""What was put right in the text of a passage before it was read."""
-
 
 def because(judged: Judgement, _check: OutcomeCheck | None = None) -> str:
     """Why a claim got its verdict."""

@@ -4,8 +4,6 @@ from __future__ import annotations
 
 import re
 from bisect import bisect_left
-from collections import Counter
-from collections.abc import Iterator
 from dataclasses import dataclass, field, replace
 from functools import lru_cache
 from typing import Literal
@@ -20,13 +18,14 @@ from app.printed.claims import (
 )
 from app.reading.arms import totals_in, words_of_arms
 from app.reading.grammar import Mark
-from app.reading.marks import Estimate, Marked, marks_of
+from app.reading.groups import Group, groups_of
+from app.reading.marks import marks_of
 from app.reading.naming import arm_name_after, horizon_in, name_in
 from app.reading.rows import Table
 from app.reading.sentences import Aside, sentence_of
 from app.reading.table import in_rows, table_of
 from app.reading.text import Even, Repair, even, is_table
-from app.reading.write import Writer, arm_claims, basis_of, measure_claim, p_claim, rate_claims
+from app.reading.write import Writer, arm_claims, measure_claim, p_claim, rate_claims
 
 Question = Literal["which_is_comparator"]
 
@@ -60,138 +59,7 @@ class Reading:
     repairs: tuple[Repair, ...] = ()
 
 
-@dataclass
-class _Group:
-    """The marks of one outcome."""
-
-    arms: list[Mark] = field(default_factory=list)
-    again: list[Mark] = field(default_factory=list)
-    order: tuple[Arm, Arm] | None = None
-    pair: Mark | None = None
-    rates: list[Mark] = field(default_factory=list)
-    estimates: list[Estimate] = field(default_factory=list)
-    p_values: list[Mark] = field(default_factory=list)
-
-    @property
-    def start(self) -> int:
-        """Where its first mark stands."""
-        marks = [
-            *self.arms,
-            *self.rates,
-            *(e.mark for e in self.estimates),
-            *self.p_values,
-            *([self.pair] if self.pair else []),
-        ]
-        return min((mark.start for mark in marks), default=0)
-
-    @property
-    def full(self) -> bool:
-        """Whether both arms are there."""
-        return len(self.arms) >= 2 or self.pair is not None or len(self.rates) >= 2
-
-
-def _groups(marked: Marked, text: str) -> list[_Group]:
-    """Marks in order, gathered into outcomes: a third arm, or the same measure again, begins another."""
-    events: list[tuple[int, str, object]] = []
-    events += [(m.start, "arm", m) for m in marked.counts]
-    events += [(m.start, "pair", m) for m in marked.pairs]
-    events += [(m.start, "rate", m) for m in marked.rates]
-    events += [(e.mark.start, "estimate", e) for e in marked.estimates]
-    events += [(m.start, "p", m) for m in marked.p_values]
-    groups = [_Group()]
-    for _, kind, what in sorted(events, key=lambda event: event[0]):
-        now = groups[-1]
-        if _begins(now, kind, what, text):
-            now = _Group()
-            groups.append(now)
-        if kind == "arm":
-            (now.again if len(now.arms) >= 2 else now.arms).append(what)  # type: ignore[arg-type]
-        elif kind == "pair":
-            now.pair = what  # type: ignore[assignment]
-        elif kind == "rate":
-            now.rates.append(what)  # type: ignore[arg-type]
-        elif kind == "estimate":
-            now.estimates.append(what)  # type: ignore[arg-type]
-        else:
-            now.p_values.append(what)  # type: ignore[arg-type]
-    groups = [contrast for group in _with_third(groups, text) for contrast in group]
-    return [
-        g
-        for g in groups
-        if g.estimates or g.p_values or g.rates or (g.full and any("percent" in m.parts for m in g.arms + g.again))
-    ]
-
-
-def _with_third(groups: list[_Group], text: str) -> Iterator[list[_Group]]:
-    """Groups as they are, but two arms and a third in one sentence as a contrast each against the comparator."""
-    i = 0
-    while i < len(groups):
-        now, after = groups[i], groups[i + 1] if i + 1 < len(groups) else None
-        if after is None or not _is_third(now, after, text):
-            yield [now]
-            i += 1
-            continue
-        estimates, p_values, i = list(after.estimates), list(after.p_values), i + 2
-        while i < len(groups) and not groups[i].arms and not groups[i].pair and not groups[i].rates:
-            estimates += groups[i].estimates
-            p_values += groups[i].p_values
-            i += 1
-        yield _contrasts([*now.arms, *after.arms], estimates, p_values, text)
-
-
-def _is_third(now: _Group, after: _Group, text: str) -> bool:
-    """Whether a lone arm belongs to the two before it: one sentence, all printed alike, nothing between them."""
-    if len(now.arms) != 2 or len(after.arms) != 1 or now.estimates or now.p_values or now.again or after.rates:
-        return False
-    start, end = sentence_of(text, now.start)
-    alike = {frozenset(mark.parts) & {"events", "total", "percent"} for mark in (*now.arms, *after.arms)}
-    return len(alike) == 1 and start <= after.arms[0].start < end
-
-
-def _contrasts(arms: list[Mark], estimates: list[Estimate], p_values: list[Mark], text: str) -> list[_Group]:
-    """Each arm against the one that words call the comparator, else the last; estimates and p in the order of the arms."""
-    ends = [*(mark.start for mark in arms[1:]), arms[-1].end + 60]
-    named = [i for i, mark in enumerate(arms) if any(arm == "comparator" for _, arm in words_of_arms(text[mark.end : ends[i]]))]
-    reference = named[0] if len(named) == 1 else len(arms) - 1
-    others = [mark for i, mark in enumerate(arms) if i != reference]
-    found = [_Group(arms=[mark, arms[reference]], order=ARMS) for mark in others]
-    seen: Counter[str] = Counter()
-    for estimate in estimates:
-        k = seen[str(estimate.mark.quantity)]
-        seen[str(estimate.mark.quantity)] += 1
-        if k < len(found):
-            found[k].estimates.append(estimate)
-    for k, mark in enumerate(p_values):
-        before = [i for i, group in enumerate(found) if any(e.mark.start < mark.start for e in group.estimates)]
-        of = before[-1] if before else k
-        if of < len(found) and not found[of].p_values:
-            found[of].p_values.append(mark)
-    return found
-
-
-def _begins(now: _Group, kind: str, what: object, text: str) -> bool:
-    """Whether a mark begins another outcome."""
-    place = what.mark.start if isinstance(what, Estimate) else what.start  # type: ignore[attr-defined]
-    other_sentence = now.start < sentence_of(text, place)[0] if (now.arms or now.pair or now.estimates or now.rates) else False
-    if kind in ("arm", "pair"):
-        if kind == "arm" and _percent_again(now, what, other_sentence=other_sentence):  # type: ignore[arg-type]
-            return False
-        beside_rates = bool(now.rates) and len(now.arms) < 2 and not other_sentence
-        return (now.full and not beside_rates) or (bool(now.estimates) and other_sentence)
-    if kind == "rate":
-        return len(now.rates) >= 2 or (bool(now.estimates) and other_sentence)
-    if kind == "estimate":
-        same = [e for e in now.estimates if e.mark.quantity == what.mark.quantity]  # type: ignore[attr-defined]
-        return bool(same) and basis_of(same[-1], text) == basis_of(what, text)  # type: ignore[arg-type]
-    return bool(now.p_values) and other_sentence
-
-
-def _percent_again(now: _Group, what: Mark, *, other_sentence: bool) -> bool:
-    """Whether a percentage is of two arms whose counts stand before it: "71/94 and 52/97, respectively (76% v 54%)"."""
-    bare = set(what.parts) <= {"percent", "sign"} and not any("percent" in mark.parts for mark in now.arms)
-    return bare and len(now.arms) == 2 and len(now.again) < 2 and not now.estimates and not other_sentence
-
-
+_PLACE_TAG = re.compile(r"\[(?P<place>abstract|text|table|figure)[^\]]{0,12}\]", re.IGNORECASE)
 _CUMULATIVE = re.compile(r"kaplan|cumulative incidence|incidence was|survival", re.IGNORECASE)
 _DIRECTION = re.compile(
     r"(?P<word>higher|lower|commoner|less common|more common|more often|less often)[ ]+(?:in|on|with|among)[ ]+(?P<who>[^,.;()]{3,60}?)[ ]+(?:than|compared)",
@@ -199,7 +67,7 @@ _DIRECTION = re.compile(
 )
 
 
-def _sense(text: str, group: _Group) -> Sense | None:
+def _sense(text: str, group: Group) -> Sense | None:
     """The word of direction of the intervention arm, where it is said whose it is."""
     start, end = sentence_of(text, group.start)
     hit = _DIRECTION.search(text, start, end)
@@ -254,7 +122,7 @@ class _Known:
         return order if not assumed or self.order is None else self.order
 
 
-def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], known: _Known) -> ReadOutcome:
+def _outcome(write: Writer, group: Group, totals: dict[Arm, tuple[int, int]], known: _Known) -> ReadOutcome:
     text = write.even.text
     claims: list[Claim | None] = []
     marks = group.arms or group.rates or ([group.pair, group.pair] if group.pair else [])
@@ -291,7 +159,9 @@ def _outcome(write: Writer, group: _Group, totals: dict[Arm, tuple[int, int]], k
         before = [own for place, own in placed if place < mark.start] if len(bases) > 1 else []
         claims.append(p_claim(write, mark, before[-1] if before else basis))
     name, horizon = name_in(text, start, group.start), horizon_in(text, start, group.start)
-    said = (replace(c, outcome=name, horizon=horizon) for c in claims if c is not None)
+    tags = list(_PLACE_TAG.finditer(text, 0, group.start))
+    place = tags[-1]["place"].lower() if tags else None
+    said = (replace(c, outcome=name, horizon=horizon, place=place) for c in claims if c is not None)  # type: ignore[arg-type]
     return ReadOutcome(tuple(said), name, horizon)
 
 
@@ -346,6 +216,31 @@ def _read_table(passage: Even, table: Table) -> Reading:
     return Reading(tuple(outcomes), _unread(write), asked, repairs=passage.repairs)
 
 
+def _moved(claim: Claim, by: int, block: int) -> Claim:
+    """A claim of a block of a passage as one of the whole passage."""
+    span = None if claim.span is None else (claim.span[0] + by, claim.span[1] + by)
+    interval = claim.interval
+    if interval is not None and interval.span is not None:
+        interval = replace(interval, span=(interval.span[0] + by, interval.span[1] + by))
+    return replace(claim, id=f"b{block}{claim.id}", span=span, interval=interval)
+
+
+def _of_blocks(blocks: list[tuple[int, Reading]]) -> Reading:
+    """Prose and tables of one passage, each read by itself."""
+    outcomes = [
+        replace(outcome, claims=tuple(_moved(claim, by, i) for claim in outcome.claims))
+        for i, (by, found) in enumerate(blocks)
+        for outcome in found.outcomes
+    ]
+    return Reading(
+        tuple(outcomes),
+        tuple(replace(u, span=(u.span[0] + by, u.span[1] + by)) for by, found in blocks for u in found.unread),
+        tuple(dict.fromkeys(q for _, found in blocks for q in found.questions)),
+        next((found.arm_names for _, found in blocks if all(found.arm_names)), ("", "")),
+        tuple(dict.fromkeys(r for _, found in blocks for r in found.repairs)),
+    )
+
+
 MOST_OUTCOMES = 200
 """Outcomes read of one passage; the numbers of any more are unread."""
 
@@ -363,6 +258,9 @@ def read(passage: str) -> Reading:
     Reading
         Outcomes with two or more claims that bear on each other; numbers not understood; what is asked.
     """
+    blocks = list(re.finditer(r"\S(?:.|\n(?!\s*\n))*", passage)) if "\n" in passage else []
+    if len(blocks) > 1 and any(is_table(block[0]) for block in blocks):
+        return _of_blocks([(block.start(), read(block[0])) for block in blocks[:MOST_OUTCOMES]])
     text = in_rows(even(passage))
     table = table_of(text.text) if is_table(text.text) else None
     if table is not None:
@@ -371,7 +269,7 @@ def read(passage: str) -> Reading:
     write = Writer(text)
     known = _Known()
     totals = totals_in(text.text, marked.taken)
-    groups = _groups(marked, text.text)[:MOST_OUTCOMES]
+    groups = groups_of(marked, text.text)[:MOST_OUTCOMES]
     outcomes = [_outcome(write, group, totals, known) for group in groups]
     kept = tuple(o for o in outcomes if len(o.claims) >= 2 or any(c.interval for c in o.claims))
     return Reading(

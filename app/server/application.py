@@ -19,7 +19,7 @@ from app.server.guard import Guard
 from app.settings import Settings
 from app.shelf.store import Shelf
 from app.web.desk import Desk
-from app.web.routes import home, methods, patterns, sheet
+from app.web.routes import home, methods, paper, patterns, sheet
 
 _YEAR = 365 * 24 * 3600
 _NO_TELEMETRY: TelemetryConfig = {
@@ -64,6 +64,7 @@ def create_app(settings: Settings) -> ASGIApp:
     app.add_middleware(GZipMiddleware, minimum_size=1000, compresslevel=5)
     app.include_router(home.router)
     app.include_router(sheet.router)
+    app.include_router(paper.router)
     app.include_router(methods.router)
     app.include_router(api.router)
     if settings.patterns:
@@ -75,7 +76,7 @@ def create_app(settings: Settings) -> ASGIApp:
         return PlainTextResponse("ok")
 
     _document(app)
-    return Guard(app, settings.body_limit)
+    return Guard(app, settings.body_limit, settings.upload_limit)
 
 
 def _document(app: FastAPI) -> None:

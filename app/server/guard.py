@@ -53,9 +53,13 @@ def _same_origin(scope: Scope, headers: Headers) -> bool:
 class Guard:
     """Wraps the application."""
 
-    def __init__(self, app: ASGIApp, body_limit: int) -> None:
+    def __init__(self, app: ASGIApp, body_limit: int, upload_limit: int) -> None:
         self.app = app
         self.body_limit = body_limit
+        self.upload_limit = upload_limit
+
+    def _limit(self, scope: Scope) -> int:
+        return self.upload_limit if scope["path"].endswith("/paper") else self.body_limit
 
     async def __call__(self, scope: Scope, receive: Receive, send: Send) -> None:
         """Refuse what is not ours, cap the body, and add the headers to whatever is sent."""
@@ -76,7 +80,7 @@ class Guard:
             status, slug = refused
             await refusal(Request(scope), status, slug)(scope, receive, send_with_headers)
             return
-        await self.app(scope, self._capped(receive), send_with_headers)
+        await self.app(scope, self._capped(receive, self._limit(scope)), send_with_headers)
 
     def _refusal(self, scope: Scope) -> tuple[int, str] | None:
         headers = Headers(scope=scope)
@@ -86,18 +90,18 @@ class Guard:
         if scope["method"] not in _SAFE and not _same_origin(scope, headers):
             return 403, "other_origin"
         length = headers.get("content-length", "0")
-        if not (length.isascii() and length.isdigit()) or len(length) > 18 or int(length) > self.body_limit:
+        if not (length.isascii() and length.isdigit()) or len(length) > 18 or int(length) > self._limit(scope):
             return 413, "body_too_large"
         return None
 
-    def _capped(self, receive: Receive) -> Receive:
+    def _capped(self, receive: Receive, limit: int) -> Receive:
         taken = 0
 
         async def capped() -> Message:
             nonlocal taken
             message = await receive()
             taken += len(message.get("body", b""))
-            if taken > self.body_limit:
+            if taken > limit:
                 raise HTTPException(413)
             return message
 

@@ -14,7 +14,7 @@ from starlette.responses import Response
 
 from app import __version__
 from app.api.problems import problems_response
-from app.errors import FieldProblem, InputProblems, NotOnShelf, ShelfBusy
+from app.errors import FieldProblem, InputProblems, NotOnShelf, ShelfBusy, UnreadablePages
 from app.present.pages import ProblemView
 from app.present.templating import render
 from app.web.htmx import Htmx
@@ -28,6 +28,14 @@ _SENTENCES: dict[str, tuple[str, str]] = {
     "not_found": ("There is nothing at this address.", "Check the address, or go back to Papers."),
     "method_not_allowed": ("This address does not answer that kind of request.", "See /openapi.json for what it takes."),
     "not_a_form": ("A sheet is saved from its form.", "Send the form of the page."),
+    "no_file": ("No file was chosen.", "Choose a PDF and send it again."),
+    "pages_broken": ("This file could not be read as a PDF.", "Open it elsewhere and copy the passage instead."),
+    "pages_locked": ("This PDF is locked with a password.", "Save it without one, or copy the passage instead."),
+    "pages_without_text": (
+        "This PDF holds pictures of pages and no text.",
+        "Have its text recognised first, or type the numbers.",
+    ),
+    "too_many_pages": ("This PDF has more than 150 pages.", "Keep the pages that print the result."),
     "bad_request": ("The request could not be read.", "Check it and send it again."),
     "program_fault": (
         "The program met a fault of its own (number {number}); what was saved before is safe.",
@@ -66,6 +74,10 @@ def install(app: FastAPI) -> None:
     @app.exception_handler(NotOnShelf)
     def not_on_shelf(request: Request, problem: NotOnShelf) -> Response:
         return answer(request, 404, "not_on_shelf", str(problem), "It may lie on another computer.")
+
+    @app.exception_handler(UnreadablePages)
+    def unreadable_pages(request: Request, problem: UnreadablePages) -> Response:
+        return refusal(request, 422, problem.slug)
 
     @app.exception_handler(ShelfBusy)
     def shelf_busy(request: Request, problem: ShelfBusy) -> Response:

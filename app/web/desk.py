@@ -15,9 +15,11 @@ from app import __version__
 from app.appraisal.run import appraise
 from app.appraisal.sheet import MOST_OUTCOMES, Sheet
 from app.errors import NotOnShelf, SaveConflict
-from app.intake.passage import ASSIGNABLE, reading_of
+from app.intake.passage import ASSIGNABLE, reading_of, with_parts
 from app.intake.sheet import gather, needs, sheet_from_form
 from app.present.pages import ConflictView, HomeView, SheetView, conflict_view, home_view, sheet_view, shelf_line
+from app.present.paper import PaperView, paper_view
+from app.reading.pages import differences, parts_of
 from app.shelf.store import Kept, Shelf
 
 _ID_BYTES = 6
@@ -139,6 +141,28 @@ class Desk:
         view = self._view(sheet, sheet_id, posted.shown, kept=kept, writer=writer, own_page=True, conflict=conflict)
         # A page in conflict stays as old as it was: its next save is set aside like this one.
         return (replace(view, revision=posted.revision) if conflict else view), conflict is not None
+
+    def paper(self, sheet_id: str, name: str, data: bytes) -> PaperView:
+        """The parts of a PDF that print results; nothing of it is kept."""
+        if not _is_id(sheet_id):
+            raise NotOnShelf(sheet_id)
+        parts = parts_of(data)
+        counted = [(part, sum(len(o.claims) for o in reading_of(part.text).outcomes)) for part in parts]
+        return paper_view(sheet_id, name, counted, differences(parts), __version__)
+
+    def take(self, sheet_id: str, posted: Posted) -> int:
+        """Put parts of a paper at the end of a sheet's passage, and give back the outcome they begin."""
+        if not _is_id(sheet_id):
+            raise NotOnShelf(sheet_id)
+        try:
+            kept = self.shelf.load(sheet_id)
+            sheet, revision = kept.sheet, kept.revision
+        except NotOnShelf:
+            sheet, revision = Sheet(), 0
+        taken = with_parts(sheet, posted.fields)
+        self._keep(sheet_id, taken, revision, fresh_id())
+        new = [f.outcome for f in taken.filled if f.start >= len(sheet.passage)]
+        return min(new, default=0)
 
     def _keep(self, sheet_id: str, sheet: Sheet, revision: int, writer: str) -> Kept:
         return self.shelf.save(sheet_id, sheet, revision, writer, now=self._now(), version=__version__)

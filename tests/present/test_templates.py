@@ -10,16 +10,24 @@ import pytest
 from app.appraisal.examples import LEG_ULCER
 from app.appraisal.sheet import Sheet
 from app.errors import FieldProblem
-from app.present import effects, pages, people, results, wording
+from app.present import boxes, effects, pages, paper, passage, people, results, wording
 from app.present.assets import asset_folder
 from app.present.patterns import patterns_view
 from app.present.templating import environment, render, static_address
 from app.settings import Settings
 
 VIEWS = [
-    pages.FieldView,
-    pages.ChoiceView,
-    pages.ArmBoxes,
+    boxes.FieldView,
+    boxes.ChoiceView,
+    boxes.ArmBoxes,
+    boxes.FigureRow,
+    passage.Piece,
+    passage.UnreadView,
+    passage.PassageView,
+    paper.PartView,
+    paper.PartGroup,
+    paper.PaperView,
+    pages.OutcomeLine,
     pages.TabView,
     pages.ShelfLine,
     pages.ConflictView,

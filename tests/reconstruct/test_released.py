@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from app.appraisal.fields import FIGURES
-from app.present.verdicts import QUESTIONS
+from app.present.asked import QUESTIONS
 from app.printed.claims import BASES, QUANTITIES, RISK_KINDS, TEST_KINDS, TOTAL_KINDS
 from app.reconstruct.verdict import CONSEQUENCES, FINDINGS, NOTE_SLUGS, READINGS, REASONS, VERDICTS
 
