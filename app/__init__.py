@@ -1,3 +1,3 @@
 """Armslength: read a published two-arm trial back to its fourfold table, and check what was printed."""
 
-__version__ = "0.3.0"
+__version__ = "0.4.0"

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass, replace
+from itertools import islice
 
 from app.printed.claims import Quantity
 from app.reading.grammar import (
@@ -25,6 +26,7 @@ from app.reading.grammar import (
 from app.reading.sentences import Aside, not_results, sentence_of
 from app.reading.text import Even
 
+_MOST_MARKS = 300  # of one rule in one piece of a passage; more is no prose
 _SEPARATOR = r"[ ]*(?:%|percentage points)?[ ]*(?:to|and|[-\u2013\u2212,;])[ ]*"
 _BARE = re.compile(rf"[ ]*%?[ ]*[,;]?[ ]*[\(\[][ ]*(?P<low>{SIGNED}){_SEPARATOR}(?P<high>{SIGNED})[ ]*%?[ ]*[\)\];]")
 _PLAIN = re.compile(
@@ -85,7 +87,7 @@ def marks_of(even: Even) -> Marked:
     counts: list[Mark] = []
     for rule in COUNTS:
         counts += _taking(rule, text, taken)
-    counts.sort(key=lambda mark: mark.start)
+    counts = sorted(counts, key=lambda mark: mark.start)[:_MOST_MARKS]
     pairs = []
     for hit in _PAIR.finditer(text):
         if not any(taken[hit.start() : hit.end()]):
@@ -99,7 +101,7 @@ def marks_of(even: Even) -> Marked:
 def _taking(rule: Rule, text: str, taken: bytearray) -> list[Mark]:
     """What a rule finds, kept from the rules after it."""
     kept = []
-    for mark in found(rule, text, taken):
+    for mark in islice(found(rule, text, taken), _MOST_MARKS):
         take(mark, taken)
         kept.append(mark)
     return kept

@@ -241,6 +241,28 @@ def _of_blocks(blocks: list[tuple[int, Reading]]) -> Reading:
     )
 
 
+_PIECE = 20_000
+_CUT = re.compile(r"(?<=[.?!])\s+(?=[A-Z])|\n")
+
+
+def _in_pieces(passage: str) -> Reading:
+    """A long passage piece by piece, cut between sentences; once enough outcomes are read the rest is left unread."""
+    found: list[tuple[int, Reading]] = []
+    start = outcomes = 0
+    while start < len(passage):
+        end = len(passage)
+        if end - start > _PIECE:
+            cuts = list(_CUT.finditer(passage, start + _PIECE // 2, start + _PIECE))
+            end = cuts[-1].end() if cuts else start + _PIECE
+        piece = passage[start:end]
+        read_here = read(piece) if outcomes < MOST_OUTCOMES else Reading((), _unread(Writer(even(piece))), ())
+        outcomes += len(read_here.outcomes)
+        found.append((start, read_here))
+        start = end
+    whole = _of_blocks(found)
+    return replace(whole, outcomes=whole.outcomes[:MOST_OUTCOMES])
+
+
 MOST_OUTCOMES = 200
 """Outcomes read of one passage; the numbers of any more are unread."""
 
@@ -258,6 +280,10 @@ def read(passage: str) -> Reading:
     Reading
         Outcomes with two or more claims that bear on each other; numbers not understood; what is asked.
     """
+    if len(passage) > _PIECE:
+        return _in_pieces(passage)
+    if not re.search(r"\d", passage):
+        return Reading((), (), ())
     blocks = list(re.finditer(r"\S(?:.|\n(?!\s*\n))*", passage)) if "\n" in passage else []
     if len(blocks) > 1 and any(is_table(block[0]) for block in blocks):
         return _of_blocks([(block.start(), read(block[0])) for block in blocks[:MOST_OUTCOMES]])

@@ -20,6 +20,7 @@ _GONE = "\u00ad\u200b\u200c\u200d\ufeff\u2060"
 _QUOTES = {"\u2018": "'", "\u2019": "'", "\u201c": '"', "\u201d": '"'}
 _BROKEN = re.compile(r"(?<=[A-Za-z])-\n[ ]*(?=[a-z])")
 _DECIMAL_COMMA = re.compile(r"(?<![\d.,])\d{1,3},\d{1,2}(?!\d)\s*%|[pP]\s*[=<>]\s*0,\d|(?<!\d)\d,\d{1,2}\s*[-;–]\s*\d,\d")
+_ENDLESS = re.compile(r"\d{41,}|[ ]{41,}|[A-Za-z]{61,}")  # no number, gap or word of a paper; rules need not try them
 _DECIMAL_POINT = re.compile(r"(?<![\d.])\d+\.(?!\d{3}(?!\d))\d")
 _THOUSANDS_POINT = re.compile(r"(?<=\d)\.(?=\d{3}(?!\d))")
 _TORN = {
@@ -115,6 +116,7 @@ def _even(raw: str, text: str, starts: Sequence[int], ends: Sequence[int]) -> Ev
     repairs: list[Repair] = ["joined_words"] if _BROKEN.search(raw) else []
     if any(mark in raw for mark in _TORN):
         repairs.append("marks")
+    text = _ENDLESS.sub(lambda run: "\u00a4" * len(run[0]), text)
     if not is_table(text):
         text = text.replace("\n", " ")
     comma = bool(_DECIMAL_COMMA.search(text)) and not _DECIMAL_POINT.search(text)
