@@ -15,6 +15,7 @@ LAYERS: dict[str, int] = {
     "printed": 1,
     "reading": 2,
     "reconstruct": 2,
+    "transport": 2,
     "appraisal": 3,
     "shelf": 4,
     "present": 4,
@@ -27,7 +28,7 @@ LAYERS: dict[str, int] = {
 """The floor of each package. 0 may be imported by all; packages on one floor never meet."""
 
 OUTSIDE: dict[str, set[str]] = {
-    "numpy": {"measures", "reconstruct", "appraisal"},
+    "numpy": {"measures", "reconstruct", "transport", "appraisal"},
     "scipy": {"measures"},
     "sqlite3": {"shelf"},
     "jinja2": {"present"},

@@ -76,11 +76,12 @@ def _reduction(result: EffectResult) -> Json:
     return {"estimate": number(1.0 - result.estimate), "intervals": intervals}
 
 
-def _segments(segments: Iterable[Segment]) -> list[Json]:
+def segments_json(segments: Iterable[Segment]) -> list[Json]:
+    """Stretches of a number needed to treat."""
     return [{"direction": s.direction, "low": number(s.low), "high": number(s.high)} for s in segments]
 
 
-def _needed(difference: Fraction, unwanted: bool) -> Json:
+def needed_json(difference: Fraction, unwanted: bool) -> Json:
     """A number needed to treat from an exact difference, without its interval."""
     direction = direction_of(difference, unwanted)
     exact = abs(Fraction(1) / difference) if difference else None
@@ -102,9 +103,9 @@ def effects_answer(effects: Effects, given: EffectsInput) -> Json:
     """The answer of /effects for one table; measures that the design forbids are null, and say why."""
     measures = effects.measures
     unwanted = given.event_is == "unwanted"
-    with_intervals = _needed(exact_difference(effects.table, 0), unwanted)
+    with_intervals = needed_json(exact_difference(effects.table, 0), unwanted)
     with_intervals["intervals"] = [
-        {"method": method.key, "segments": _segments(needed_segments(interval, unwanted)), "default": method.default}
+        {"method": method.key, "segments": segments_json(needed_segments(interval, unwanted)), "default": method.default}
         for method, interval in measures["risk_difference"].intervals
     ]
     risks = {"intervention": _risk(effects.intervention), "comparator": _risk(effects.comparator)}
@@ -164,7 +165,7 @@ def _person_time_needed(rates: Rates) -> Json:
     result = rates.measures["rate_difference"]
     _, interval = next(pair for pair in result.intervals if pair[0].default)
     words = {"benefit": "fewer", "harm": "more"}
-    segments = _segments(needed_segments(interval, True))
+    segments = segments_json(needed_segments(interval, True))
     return {
         "estimate": number(needed.number_needed(result.estimate)),
         "segments": [{**segment, "direction": words[segment["direction"]]} for segment in segments],
@@ -195,12 +196,12 @@ def hazard_answer(given: HazardInput) -> Json:
     risks = [float(hazard.risk_with(hr, given.comparator_risk)) for hr in (estimate, low, high)]
     differences = [float(hazard.risk_difference_at(hr, given.comparator_risk)) for hr in (estimate, low, high)]
     unwanted = given.event_is == "unwanted"
-    estimate_only = _needed(Fraction(differences[0]), unwanted)
+    estimate_only = needed_json(Fraction(differences[0]), unwanted)
     interval = single(*differences[1:])
     return versioned(
         risk_with=limits(*risks),
         risk_difference=limits(*differences),
-        number_needed_to_treat={**estimate_only, "segments": _segments(needed_segments(interval, unwanted))},
+        number_needed_to_treat={**estimate_only, "segments": segments_json(needed_segments(interval, unwanted))},
         assumes="The ratio of the hazards is the same at all times up to this one.",
     )
 

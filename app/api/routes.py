@@ -10,12 +10,13 @@ from typing import Annotated, Any
 from fastapi import APIRouter, Depends, Request
 from fastapi.responses import JSONResponse
 
-from app.api import answers, check_schemas, checks, schemas
+from app.api import answers, apply, apply_schemas, check_schemas, checks, schemas
 from app.api.answers import Json
 from app.api.shapes import Problems, Shape
 from app.appraisal.effects import effects_of
 from app.appraisal.rates import rates_of
 from app.errors import FieldProblem, InputProblems
+from app.intake import apply as intake_apply
 from app.intake import claims, counts, estimates
 
 _REFUSALS: dict[int | str, dict[str, Any]] = {
@@ -117,6 +118,13 @@ ENDPOINTS: tuple[Endpoint, ...] = (
         schemas.StrataRequest,
         schemas.StrataAnswer,
         lambda body: answers.strata_answer(counts.strata_input(body)),
+    ),
+    Endpoint(
+        "/apply",
+        "An effect carried to other starting risks, under each scale that may stay the same.",
+        apply_schemas.ApplyRequest,
+        apply_schemas.ApplyAnswer,
+        lambda body: apply.apply_answer(intake_apply.apply_input(body)),
     ),
     Endpoint(
         "/hazard",

@@ -11,7 +11,7 @@ from app.measures.bayes import PRIORS
 from app.measures.fourfold import Fourfold
 from app.measures.persontime import PersonTime
 
-_ARMS = ("intervention", "comparator")
+ARM_NAMES = ("intervention", "comparator")
 _COUNTS = '{"events": 46, "total": 418}'
 _MOST_STRATA = 1000
 _SHORTEST_TIME, _LONGEST_TIME = 1e-3, 1e9
@@ -86,8 +86,9 @@ def _arm(body: Body, name: str) -> tuple[int, int]:
     return events, total
 
 
-def _table(body: Body) -> Fourfold:
-    (a, n1), (c, n2) = (_arm(body, name) for name in _ARMS)
+def table_of(body: Body) -> Fourfold:
+    """The counts of both arms of a body."""
+    (a, n1), (c, n2) = (_arm(body, name) for name in ARM_NAMES)
     return Fourfold(a, n1, c, n2)
 
 
@@ -99,12 +100,12 @@ def effects_input(given: Any) -> EffectsInput:
     InputProblems
         Everything that is wrong with it.
     """
-    body = Body(given, (*_ARMS, "confidence_level", "event_is", "design", "per", "missing", "exact_unconditional"))
-    table = _table(body)
+    body = Body(given, (*ARM_NAMES, "confidence_level", "event_is", "design", "per", "missing", "exact_unconditional"))
+    table = table_of(body)
     body.number("per", _SHORTEST_TIME, _LONGEST_TIME, default=1.0)
     if body.has("missing"):
-        missing = body.inner("missing", _ARMS, '{"intervention": 14, "comparator": 13}')
-        for name in _ARMS:
+        missing = body.inner("missing", ARM_NAMES, '{"intervention": 14, "comparator": 13}')
+        for name in ARM_NAMES:
             if missing.has(name):
                 missing.whole(name)
     found = EffectsInput(
@@ -126,10 +127,10 @@ def rates_input(given: Any) -> RatesInput:
     InputProblems
         Everything that is wrong with it.
     """
-    body = Body(given, (*_ARMS, "confidence_level", "per"))
+    body = Body(given, (*ARM_NAMES, "confidence_level", "per"))
     cells: list[float] = []
     totals: list[int | None] = []
-    for name in _ARMS:
+    for name in ARM_NAMES:
         arm = body.inner(name, ("events", "person_time", "total"), '{"events": 7, "person_time": 4412.0}')
         given_here = body.has(name)
         events = arm.whole("events") if given_here else 0
@@ -153,7 +154,8 @@ def strata_input(given: Any) -> StrataInput:
     """
     body = Body(given, ("strata", "confidence_level"))
     rows = [
-        (*_arm(stratum, "intervention"), *_arm(stratum, "comparator")) for stratum in body.each("strata", _ARMS, _MOST_STRATA)
+        (*_arm(stratum, "intervention"), *_arm(stratum, "comparator"))
+        for stratum in body.each("strata", ARM_NAMES, _MOST_STRATA)
     ]
     level = body.confidence_level()
     body.finish()
@@ -168,8 +170,8 @@ def cluster_input(given: Any) -> ClusterInput:
     InputProblems
         Everything that is wrong with it.
     """
-    body = Body(given, (*_ARMS, "confidence_level", "cluster_size", "intracluster_correlation"))
-    table = _table(body)
+    body = Body(given, (*ARM_NAMES, "confidence_level", "cluster_size", "intracluster_correlation"))
+    table = table_of(body)
     size = body.number("cluster_size", 1.0, 1e9)
     correlation = body.number("intracluster_correlation", 0.0, 1.0)
     level = body.confidence_level()
@@ -199,7 +201,7 @@ def probability_input(given: Any) -> ProbabilityInput:
     InputProblems
         Everything that is wrong with it.
     """
-    body = Body(given, (*_ARMS, "prior"))
-    found = ProbabilityInput(_table(body), body.choice("prior", tuple(PRIORS), "uniform"))
+    body = Body(given, (*ARM_NAMES, "prior"))
+    found = ProbabilityInput(table_of(body), body.choice("prior", tuple(PRIORS), "uniform"))
     body.finish()
     return found

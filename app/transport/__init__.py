@@ -1,0 +1,1 @@
+"""A trial's effect carried to another starting risk: what stays the same is an assumption, and is said."""
