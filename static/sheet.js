@@ -2,18 +2,18 @@
 // typed in the last moments when the page is left. Without script the form still works.
 (() => {
   const LEFT = "armslength-left-while-typing";
-  let typed = false;
+  let typed = 0, sent = 0, saved = 0;  // changes made, those in the last save sent, those a save has answered for
   const form = () => document.getElementById("sheet-form");
   const say = (hidden) => {
     const alert = document.getElementById("not-saved");
     if (alert) alert.hidden = hidden;
   };
   document.addEventListener("input", (event) => {
-    if (event.target.form === form()) typed = true;
+    if (event.target.form === form()) typed += 1;
   });
-  document.addEventListener("htmx:before:request", () => { typed = false; });
-  document.addEventListener("htmx:after:request", () => say(true));
-  document.addEventListener("htmx:error", () => { typed = true; say(false); });
+  document.addEventListener("htmx:before:request", () => { sent = typed; });
+  document.addEventListener("htmx:after:request", () => { saved = sent; say(true); });
+  document.addEventListener("htmx:error", () => { saved = Math.min(saved, typed - 1); say(false); });
   // An outcome just added wants its name first.
   let added = false;
   document.addEventListener("click", (event) => { added = event.target.id === "add-outcome"; });
@@ -51,7 +51,7 @@
     form.submit();
   });
   addEventListener("pagehide", () => {
-    if (!typed || !form()) return;
+    if (typed === saved || !form()) return;
     const body = new URLSearchParams(new FormData(form()));
     navigator.sendBeacon(form().action, body);
     sessionStorage.setItem(LEFT, JSON.stringify({ page: location.pathname, when: Date.now(), body: body.toString() }));
