@@ -22,10 +22,11 @@ from app.appraisal.sheet import (
     TypedArm,
     TypedFigure,
     TypedOutcome,
+    TypedRisk,
 )
 from app.printed.claims import ARMS, BASES, PLACES, TEST_KINDS
 
-VERSION = 4
+VERSION = 5
 
 _Choice = TypeVar("_Choice", bound=str)
 
@@ -97,6 +98,8 @@ def decode(text: str) -> Sheet:
         figures = [[{**f, "test": ""} for f in o["figures"]] for o in sheet["outcomes"]]
         outcomes_then = [{**o, "figures": f} for o, f in zip(sheet["outcomes"], figures, strict=True)]
         sheet = {**sheet, "passage": "", "arm_order": "as_read", "filled": [], "outcomes": outcomes_then}
+    if document["version"] < 5:
+        sheet = {**sheet, "outcomes": [{**o, "risks": []} for o in sheet["outcomes"]]}
     outcomes = tuple(
         TypedOutcome(
             name=_text(outcome["name"]),
@@ -108,6 +111,7 @@ def decode(text: str) -> Sheet:
             figures=tuple(_figure(figure) for figure in outcome["figures"]),
             trust=_choice(outcome["trust"], TRUST),
             part_of=_choice(outcome["part_of"], PART_OF),
+            risks=tuple(TypedRisk(**{key: _text(value) for key, value in risk.items()}) for risk in outcome["risks"]),
         )
         for outcome in sheet["outcomes"]
     )

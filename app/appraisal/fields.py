@@ -107,3 +107,8 @@ def arm_name_field(arm: int) -> str:
 def figure_field(outcome: int, key: str, part: str) -> str:
     """Form name of a part of a further number of one outcome."""
     return f"outcome-{outcome}-figure-{key}-{part}"
+
+
+def risk_field(outcome: int, key: str, part: str) -> str:
+    """Form name of a part of a group of the reader's patients."""
+    return f"outcome-{outcome}-risk-{key}-{part}"

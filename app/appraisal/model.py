@@ -14,6 +14,17 @@ from app.printed.claims import Claim
 from app.reconstruct.arm import ArmFits
 from app.reconstruct.tables import Fits
 from app.reconstruct.verdict import OutcomeCheck
+from app.transport.constant import Held
+
+
+@dataclass(frozen=True, slots=True)
+class StartingRisk:
+    """A risk without the intervention, or a range of it, of people who are not the trial's; from 0 to 1."""
+
+    name: str
+    low: float
+    high: float
+    source: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -28,6 +39,7 @@ class OutcomeInput:
     design: Design = "trial"
     trust: Trust = ""
     part_of: PartOf = ""
+    starting_risks: tuple[StartingRisk, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -119,6 +131,14 @@ class BothArms:
 
 
 @dataclass(frozen=True, slots=True)
+class Patients:
+    """The effect of the one table that fits on the scales that may be held, and the trial's own comparator risk."""
+
+    held: tuple[Held, ...]
+    comparator_risk: float
+
+
+@dataclass(frozen=True, slots=True)
 class OutcomeAppraisal:
     """All that follows from one outcome's claims; None for what too little is claimed of."""
 
@@ -128,6 +148,7 @@ class OutcomeAppraisal:
     both: BothArms | None
     notes: tuple[Note, ...]
     check: OutcomeCheck
+    patients: Patients | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -8,6 +8,7 @@ from fractions import Fraction
 
 import numpy as np
 
+from app.appraisal.carry import held_from_counts
 from app.appraisal.effects import Effects, effects_of, risk_of
 from app.appraisal.model import (
     SHARED,
@@ -19,6 +20,7 @@ from app.appraisal.model import (
     NeededAppraisal,
     OutcomeAppraisal,
     OutcomeInput,
+    Patients,
     Range,
     RiskAppraisal,
 )
@@ -111,7 +113,20 @@ def _outcome(given: OutcomeInput, check: OutcomeCheck) -> OutcomeAppraisal:
     both = None
     if intervention and comparator:
         both = _both(intervention, comparator, given, fits or tables_that_fit(first, second))
-    return OutcomeAppraisal(given, intervention, comparator, both, notes_on(given, first, second, both), check)
+    notes = notes_on(given, first, second, both)
+    return OutcomeAppraisal(given, intervention, comparator, both, notes, check, _patients(given, both))
+
+
+def _patients(given: OutcomeInput, both: BothArms | None) -> Patients | None:
+    """What can be carried to others: the effect of one table, of a design that has risks."""
+    if both is None or both.fits.count != 1 or given.design == "case_control":
+        return None
+    table = both.fits.tables
+    risk = float(np.ravel(table.events_comparator / table.total_comparator)[0])
+    held = held_from_counts(table, given.confidence_level)
+    if given.event_is == "wanted":
+        held += held_from_counts(table, given.confidence_level, face="complement")[:1]
+    return Patients(held, risk)
 
 
 _BOX = ("events", "non_events", "total", "risk")

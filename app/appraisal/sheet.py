@@ -60,9 +60,20 @@ class TypedFigure:
 
 
 @dataclass(frozen=True, slots=True)
+class TypedRisk:
+    """A group of the reader's own patients: its name, its risk without the intervention as typed, and where that is from."""
+
+    key: str
+    name: str = ""
+    risk: str = ""
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
 class TypedOutcome:
     """What is typed of one outcome; `arms` runs as the sheet's arms do.
 
+    `risks` are the reader's own patients.
     `trust` is what the reader goes by where counts and percentages contradict each other; `part_of` how
     the outcome belongs to the first one of the sheet.
     """
@@ -76,6 +87,7 @@ class TypedOutcome:
     figures: tuple[TypedFigure, ...] = ()
     trust: Trust = ""
     part_of: PartOf = ""
+    risks: tuple[TypedRisk, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -56,6 +56,8 @@ _SENTENCES: dict[str, tuple[str, str]] = {
     ),
     "limits_reversed": ("The lower limit {low} is above the upper limit {high}.", "Check both limits and their signs."),
     "which_arm": ("Which arm this number is of is not said.", "Choose the arm under More."),
+    "not_a_risk": ("This is not a risk.", "Type it as 8%, 80 per 1000, or a range such as 5 to 10%."),
+    "risk_out_of_range": ("A risk lies between 0 and 100%, the lower end first.", "Check the number and its unit."),
     "proportion_typed": (
         "No whole number of people gives this percentage.",
         "If {printed} is a proportion, type it as a percentage, {hundredfold}.",

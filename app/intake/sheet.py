@@ -17,6 +17,7 @@ from app.appraisal.fields import (
     arm_name_field,
     figure_field,
     outcome_field,
+    risk_field,
 )
 from app.appraisal.model import AppraisalInput, OutcomeInput
 from app.appraisal.sheet import (
@@ -40,16 +41,20 @@ from app.appraisal.sheet import (
     TypedArm,
     TypedFigure,
     TypedOutcome,
+    TypedRisk,
 )
 from app.errors import FieldProblem, PrintedProblem
 from app.intake.figures import MOST_FIGURES, read_figure
 from app.intake.passage import assigned, fill
 from app.intake.problems import printed_problem, problem
+from app.intake.risks import MOST_RISKS, read_risk
 from app.measures.fourfold import LARGEST_TOTAL
 from app.printed.claims import ARMS, BASES, PLACES, TEST_KINDS, Arm, Basis, Claim, Place, TestKind
 from app.printed.number import PrintedNumber, read_number
 from app.reading.text import MOST
 from app.reconstruct.arm import ArmFits, arm_fits
+
+RISK_PARTS = ("name", "risk", "source")
 
 
 @dataclass(frozen=True, slots=True)
@@ -89,6 +94,10 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
                 figures=figures,
                 trust=cast("Trust", choice(outcome_field(i, "trust"), TRUST, outcome.trust)),
                 part_of=cast("PartOf", choice(outcome_field(i, "part_of"), PART_OF, outcome.part_of)),
+                risks=tuple(
+                    TypedRisk(risk.key, *(text(risk_field(i, risk.key, part), getattr(risk, part)) for part in RISK_PARTS))
+                    for risk in outcome.risks
+                ),
             )
         )
     outcomes = _asked_for(form, outcomes)
@@ -148,6 +157,10 @@ def _asked_for(form: Mapping[str, str], outcomes: list[TypedOutcome]) -> list[Ty
         key = str(max((int(f.key) for f in of.figures), default=0) + 1)
         kind = form["add-figure"] if form["add-figure"] in FIGURES else "risk_ratio"
         of = replace(of, figures=(*of.figures, TypedFigure(key, kind)))
+    if "add-risk" in form and len(of.risks) < MOST_RISKS:
+        of = replace(of, risks=(*of.risks, TypedRisk(str(max((int(r.key) for r in of.risks), default=0) + 1))))
+    if "remove-risk" in form:
+        of = replace(of, risks=tuple(r for r in of.risks if r.key != form["remove-risk"]))
     if "remove-figure" in form:
         of = replace(of, figures=tuple(f for f in of.figures if f.key != form["remove-figure"]))
     return [*outcomes[:place], of, *outcomes[place + 1 :]]
@@ -284,6 +297,11 @@ def gather(sheet: Sheet) -> Gathered:
             claim, refused = read_figure(i, figure, outcome.horizon.strip())
             problems += refused
             claims += [claim] if claim is not None else []
+        risks = []
+        for typed_risk in outcome.risks:
+            risk, refused = read_risk(i, typed_risk)
+            problems += refused
+            risks += [risk] if risk is not None else []
         outcomes.append(
             OutcomeInput(
                 tuple(claims),
@@ -294,6 +312,7 @@ def gather(sheet: Sheet) -> Gathered:
                 sheet.design,
                 outcome.trust,
                 outcome.part_of,
+                tuple(risks),
             )
         )
     return Gathered(AppraisalInput(tuple(outcomes)), tuple(problems), read_as)

@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
-from app.appraisal.fields import FIGURES, NUMBER_FIELDS, arm_field, arm_name_field, figure_field
-from app.appraisal.sheet import FIGURE_LEVELS, TypedArm, TypedFigure
+from app.appraisal.fields import FIGURES, NUMBER_FIELDS, arm_field, arm_name_field, figure_field, risk_field
+from app.appraisal.sheet import FIGURE_LEVELS, TypedArm, TypedFigure, TypedRisk
 from app.errors import FieldProblem
 from app.present.numerals import fixed
 from app.printed.claims import ARMS
@@ -66,6 +66,16 @@ class FigureRow:
     more: tuple[ChoiceView, ...]
     label: FieldView
     opened: bool
+
+
+@dataclass(frozen=True, slots=True)
+class RiskRow:
+    """The boxes of one group of the reader's patients."""
+
+    key: str
+    name: FieldView
+    risk: FieldView
+    source: FieldView
 
 
 class Fields:
@@ -174,3 +184,17 @@ def figure_row(fields: Fields, outcome: int, place: int, figure: TypedFigure) ->
 def choice_view(name: str, label: str, texts: Mapping[str, str], chosen: str) -> ChoiceView:
     """A choice of texts by value."""
     return ChoiceView(name, label, tuple((value, text, value == chosen) for value, text in texts.items()))
+
+
+def risk_row(fields: Fields, outcome: int, risk: TypedRisk) -> RiskRow:
+    """The row of one group of patients."""
+
+    def box(part: str, label: str, example: str) -> FieldView:
+        return fields.box(risk_field(outcome, risk.key, part), label, str(getattr(risk, part)), example)
+
+    return RiskRow(
+        risk.key,
+        box("name", "Group", "low risk"),
+        box("risk", "Risk without it", "8%"),
+        box("source", "Where it is from", "clinic register, 2025"),
+    )

@@ -20,10 +20,13 @@ from app.present.boxes import (
     Fields,
     FieldView,
     FigureRow,
+    RiskRow,
     choice_view,
     figure_row,
+    risk_row,
 )
 from app.present.passage import PassageView, claim_id, numbering, passage_view
+from app.present.patients import PatientsView, patients_view
 from app.present.results import ResultsView, results_view
 from app.present.verdicts import VERDICT_MARK, VERDICT_TEXT
 from app.present.wording import CAUTIONS, Names
@@ -106,6 +109,8 @@ class SheetView:
     trust: ChoiceView | None
     part_of: ChoiceView | None
     results: ResultsView
+    risks: tuple[RiskRow, ...]
+    patients: PatientsView | None
     cautions: tuple[str, ...]
     conflict: ConflictView | None
     version: str
@@ -316,6 +321,8 @@ def sheet_view(
         if shown
         else None,
         results=results,
+        risks=tuple(risk_row(fields, shown, risk) for risk in outcome.risks),
+        patients=patients_view(appraisal.outcomes[shown], names_of(sheet, shown)),
         cautions=CAUTIONS,
         conflict=conflict,
         version=version,

@@ -43,8 +43,9 @@ def test_frozen_sample_still_opens(path: Path) -> None:
     sheet = decode(path.read_text())
     assert sheet.title == LEG_ULCER.title
     assert sheet.outcomes[0].arms[1].percentage == "16·4%"
-    assert len(sheet.outcomes[0].figures) == {"sheet-3.json": 3, "sheet-4.json": 2}.get(path.name, 0)
-    assert bool(sheet.passage and sheet.filled) == (path.name == "sheet-4.json")
+    assert len(sheet.outcomes[0].figures) == {"sheet-3.json": 3, "sheet-4.json": 2, "sheet-5.json": 2}.get(path.name, 0)
+    assert bool(sheet.passage and sheet.filled) == (path.name in ("sheet-4.json", "sheet-5.json"))
+    assert bool(sheet.outcomes[0].risks) == (path.name == "sheet-5.json")
 
 
 @pytest.mark.parametrize(
