@@ -81,10 +81,13 @@ def segments_json(segments: Iterable[Segment]) -> list[Json]:
     return [{"direction": s.direction, "low": number(s.low), "high": number(s.high)} for s in segments]
 
 
+_LEAST = Fraction(1, 10**300)  # a smaller difference has no number needed that a float could hold
+
+
 def needed_json(difference: Fraction, unwanted: bool) -> Json:
     """A number needed to treat from an exact difference, without its interval."""
     direction = direction_of(difference, unwanted)
-    exact = abs(Fraction(1) / difference) if difference else None
+    exact = abs(Fraction(1) / difference) if abs(difference) > _LEAST else None
     rounded = rounded_needed(exact, direction) if exact else None
     return {
         "estimate": number(math.inf if exact is None else float(exact)),

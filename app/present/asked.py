@@ -7,6 +7,9 @@ from collections.abc import Mapping
 QUESTIONS: Mapping[str, str] = {
     "crude_or_adjusted": "Is the estimate adjusted, stratified or from a model? It fits the counts only if it is.",
     "which_is_comparator": "Which group is the comparator? The one named first is taken as the intervention.",
+    "risk_or_rate_ratio": (
+        "Is the relative risk a ratio of risks or of rates? It is taken as of risks; choose rate ratio beside it if not."
+    ),
     "which_test_gave_p": "Which test gave the P? It and the interval stand on different sides of 0.05.",
 }
 """What a reader is asked, by the slug of the question."""

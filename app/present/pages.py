@@ -11,6 +11,7 @@ from app.appraisal.fields import FIGURES, NUMBER_FIELDS, outcome_field
 from app.appraisal.model import Appraisal
 from app.appraisal.sheet import CONFIDENCE_LEVELS, MOST_OUTCOMES, Sheet, TypedArm, TypedFigure, TypedOutcome
 from app.errors import FieldProblem
+from app.present.balance import BalanceView, balance_view
 from app.present.boxes import (
     BASIS_TEXT,
     PART_TEXT,
@@ -111,6 +112,7 @@ class SheetView:
     results: ResultsView
     risks: tuple[RiskRow, ...]
     patients: PatientsView | None
+    balance: BalanceView | None
     cautions: tuple[str, ...]
     conflict: ConflictView | None
     version: str
@@ -322,6 +324,7 @@ def sheet_view(
         else None,
         results=results,
         risks=tuple(risk_row(fields, shown, risk) for risk in outcome.risks),
+        balance=balance_view(sheet, appraisal, f"{sheet.confidence_level}% interval"),
         patients=patients_view(appraisal.outcomes[shown], names_of(sheet, shown)),
         cautions=CAUTIONS,
         conflict=conflict,

@@ -24,6 +24,7 @@ _SCALE_TEXT = {
 }
 _SHOWN = ("risk_ratio", "odds_ratio", "risk_difference")
 _POINTS = 60
+_LEAST = 1e-12  # a smaller difference is none
 
 ASSUMED = (
     "None of these stays the same by law: whether the risk ratio or the odds ratio does is disputed. The interval carries the "
@@ -126,7 +127,7 @@ def _row(held: constant.Held, ends: tuple[float, float], words: object, unwanted
 
 def _needed(changes: Sequence[float], words: object, unwanted: bool) -> str:
     near, far = (Fraction(change) for change in (changes[0], changes[-1]))
-    if near * far <= 0:
+    if near * far <= 0 or min(abs(near), abs(far)) < _LEAST:
         return "none"
     sense = direction_of(near, unwanted)
     texts = [rounded_needed(abs(1 / end), sense) for end in sorted((near, far), key=lambda d: -abs(d))]

@@ -27,7 +27,7 @@ from app.reading.table import in_rows, table_of
 from app.reading.text import Even, Repair, even, is_table
 from app.reading.write import Writer, arm_claims, measure_claim, p_claim, rate_claims
 
-Question = Literal["which_is_comparator"]
+Question = Literal["which_is_comparator", "risk_or_rate_ratio"]
 
 
 @dataclass(frozen=True, slots=True)
@@ -151,6 +151,8 @@ def _outcome(write: Writer, group: Group, totals: dict[Arm, tuple[int, int]], kn
         claims += _earlier_totals(write, claims, totals)
     sense = _sense(text, group)
     measured = [measure_claim(write, e, sense if i == 0 else None) for i, e in enumerate(group.estimates)]
+    if group.rates and any(c is not None and c.quantity == "risk_ratio" for c in measured):
+        known.asked.add("risk_or_rate_ratio")
     bases = {c.basis for c in measured if c is not None}
     basis: Basis = next(iter(bases)) if len(bases) == 1 else "unstated"
     claims += measured

@@ -91,3 +91,9 @@ def test_error_in_body(client: TestClient, change: dict[str, Any], field: str, m
     answer = ask(client, **{"effect": ratio("risk_ratio", 0.7), "baseline_risks": [0.2], **change})
     assert answer.status_code == 422
     assert (field, message) in [(p["field"], p["message"]) for p in answer.json()["problems"]]
+
+
+def test_a_difference_too_small_for_a_number_needed(client: TestClient) -> None:
+    row = scales(client, effect={"measure": "risk_difference", "estimate": 5e-324, "low": 0, "high": 0.1}, baseline_risks=[0.0])
+    needed = row["risk_difference"]["number_needed_to_treat"]
+    assert (needed["estimate"], needed["rounded"]) == ("inf", None)

@@ -10,7 +10,7 @@ import pytest
 from app.appraisal.examples import LEG_ULCER
 from app.appraisal.sheet import Sheet
 from app.errors import FieldProblem
-from app.present import boxes, effects, pages, paper, passage, patients, people, results, wording
+from app.present import balance, boxes, effects, pages, paper, passage, patients, people, results, wording
 from app.present.assets import asset_folder
 from app.present.patterns import patterns_view
 from app.present.templating import environment, render, static_address
@@ -22,6 +22,8 @@ VIEWS = [
     boxes.ArmBoxes,
     boxes.FigureRow,
     boxes.RiskRow,
+    balance.BalanceRow,
+    balance.BalanceView,
     patients.CarriedRow,
     patients.CarriedGroup,
     patients.PatientsView,

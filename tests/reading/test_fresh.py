@@ -86,3 +86,9 @@ def test_end_to_end(name: str) -> None:
 def test_planned_and_baseline_numbers_say_why_they_are_not_read() -> None:
     assert {u.why for u in read(FRESH["f31"]["text"]).unread} == {"planned"}
     assert {u.why for u in read(FRESH["f30"]["text"]).unread} == {"at_baseline"}
+
+
+def test_a_relative_risk_beside_rates_is_asked_about() -> None:
+    text = FRESH["f13"]["text"]
+    assert read(text).questions == ()
+    assert read(text.replace("rate ratio", "RR")).questions == ("risk_or_rate_ratio",)

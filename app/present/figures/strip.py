@@ -20,7 +20,8 @@ _LOG_STEPS = (1.0, 2.0, 5.0)
 class Marks:
     """What a strip shows, on the scale of the measure: an estimate (or its range) and two limits.
 
-    `no_effect` is where no effect lies; `label` writes a tick from its value and the step between ticks.
+    `no_effect` is where no effect lies; `label` writes a tick from its value and the step between ticks; `frame` are values
+    that the strip reaches to in any case, so that several share a scale.
     """
 
     estimate: tuple[float, float]
@@ -30,6 +31,7 @@ class Marks:
     log: bool
     label: Callable[[float, float], str]
     description: str
+    frame: tuple[float, ...] = ()
 
 
 def _linear_ticks(low: float, high: float) -> list[float]:
@@ -56,7 +58,7 @@ def strip(marks: Marks) -> Markup:
     values = (*marks.estimate, marks.low, marks.high)
     usable = [at(v) for v in values if math.isfinite(v) and (not marks.log or v > 0)]
     zero = at(marks.no_effect)
-    first, last = min([*usable, zero]), max([*usable, zero])
+    first, last = min([*usable, zero, *marks.frame]), max([*usable, zero, *marks.frame])
     room = (last - first) or (math.log(4.0) if marks.log else 0.1)
     first, last = first - 0.16 * room, last + 0.16 * room
 
