@@ -1,4 +1,4 @@
-"""The documented shapes of /apply."""
+"""The documented shapes of /apply and /balance."""
 
 from __future__ import annotations
 
@@ -64,4 +64,49 @@ class ApplyAnswer(Shape):
     """Every starting risk under every scale."""
 
     baselines: list[BaselineShape]
+    version: str
+
+
+class BalanceOutcomeShape(Shape):
+    """One outcome of a trial; without `baseline_risk` at the trial's own."""
+
+    name: Annotated[str, Field(max_length=400)] = ""
+    horizon: Annotated[str, Field(max_length=400)] | None = None
+    event_is: EventIs = "unwanted"
+    intervention: ArmCounts
+    comparator: ArmCounts
+    baseline_risk: Probability | None = None
+    held: Scale = "risk_ratio"
+
+
+class BalanceRequest(Shape):
+    """Outcomes of one trial, and what they are counted per."""
+
+    outcomes: Annotated[list[BalanceOutcomeShape], Field(min_length=1, max_length=60)]
+    per: Annotated[int, Field(ge=1, le=1_000_000_000)] = 1000
+    confidence_level: Level = 0.95
+
+
+class BalanceRowShape(Shape):
+    """One outcome: how many without and with the intervention; at a given risk it is taken as known."""
+
+    name: str
+    horizon: str | None
+    event_is: EventIs
+    starting_risk: Literal["trial", "given"]
+    held: Scale
+    possible: bool
+    without: Number
+    with_: Annotated[Number, Field(alias="with")]
+    change: Number
+    low: Number
+    high: Number
+
+
+class BalanceAnswer(Shape):
+    """Every outcome in the same form; `one_horizon` says whether all refer to one time."""
+
+    per: int
+    one_horizon: bool
+    outcomes: list[BalanceRowShape]
     version: str

@@ -10,13 +10,14 @@ from typing import Annotated, Any
 from fastapi import APIRouter, Depends, Request
 from fastapi.responses import JSONResponse
 
-from app.api import answers, apply, apply_schemas, check_schemas, checks, schemas
+from app.api import answers, apply, apply_schemas, balance, check_schemas, checks, schemas
 from app.api.answers import Json
 from app.api.shapes import Problems, Shape
 from app.appraisal.effects import effects_of
 from app.appraisal.rates import rates_of
 from app.errors import FieldProblem, InputProblems
 from app.intake import apply as intake_apply
+from app.intake import balance as intake_balance
 from app.intake import claims, counts, estimates
 
 _REFUSALS: dict[int | str, dict[str, Any]] = {
@@ -125,6 +126,13 @@ ENDPOINTS: tuple[Endpoint, ...] = (
         apply_schemas.ApplyRequest,
         apply_schemas.ApplyAnswer,
         lambda body: apply.apply_answer(intake_apply.apply_input(body)),
+    ),
+    Endpoint(
+        "/balance",
+        "Outcomes of one trial in the same form, benefit beside harm.",
+        apply_schemas.BalanceRequest,
+        apply_schemas.BalanceAnswer,
+        lambda body: balance.balance_answer(intake_balance.balance_input(body)),
     ),
     Endpoint(
         "/hazard",

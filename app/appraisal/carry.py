@@ -32,7 +32,7 @@ def held_from_counts(
     """
     measures = effects_of(table, confidence_level).measures
     turned = effects_of(table.complement(), confidence_level).measures if face == "complement" else measures
-    risk = float(np.ravel(table.events_comparator / table.total_comparator)[0])
+    risk = own_risk(table)
     found = []
     for scale in SCALES:
         if given is not None and given.scale == scale:
@@ -44,6 +44,11 @@ def held_from_counts(
         else:
             found.append(_of(measures, scale))
     return tuple(found)
+
+
+def own_risk(table: Fourfold) -> float:
+    """The comparator's risk of one table."""
+    return float(np.ravel(table.events_comparator / table.total_comparator)[0])
 
 
 def _of(measures: object, scale: str) -> Held:

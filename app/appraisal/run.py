@@ -8,7 +8,7 @@ from fractions import Fraction
 
 import numpy as np
 
-from app.appraisal.carry import held_from_counts
+from app.appraisal.carry import held_from_counts, own_risk
 from app.appraisal.effects import Effects, effects_of, risk_of
 from app.appraisal.model import (
     SHARED,
@@ -122,7 +122,7 @@ def _patients(given: OutcomeInput, both: BothArms | None) -> Patients | None:
     if both is None or both.fits.count != 1 or given.design == "case_control":
         return None
     table = both.fits.tables
-    risk = float(np.ravel(table.events_comparator / table.total_comparator)[0])
+    risk = own_risk(table)
     held = held_from_counts(table, given.confidence_level)
     if given.event_is == "wanted":
         held += held_from_counts(table, given.confidence_level, face="complement")[:1]

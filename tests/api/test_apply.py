@@ -97,3 +97,42 @@ def test_a_difference_too_small_for_a_number_needed(client: TestClient) -> None:
     row = scales(client, effect={"measure": "risk_difference", "estimate": 5e-324, "low": 0, "high": 0.1}, baseline_risks=[0.0])
     needed = row["risk_difference"]["number_needed_to_treat"]
     assert (needed["estimate"], needed["rounded"]) == ("inf", None)
+
+
+def test_benefit_and_harm_each_with_its_own_risk(client: TestClient) -> None:
+    trial = [
+        {"name": "Recurrence", "intervention": {"events": 46, "total": 418}, "comparator": {"events": 67, "total": 409}},
+        {"name": "Irritation", "intervention": {"events": 51, "total": 418}, "comparator": {"events": 23, "total": 409}},
+    ]
+    outcomes = [{**trial[0], "horizon": "12 months", "baseline_risk": 0.08}, {**trial[1], "horizon": "12 months"}]
+    answer = client.post("/api/v1/balance", json={"outcomes": outcomes})
+    assert answer.status_code == 200
+    body = answer.json()
+    assert (body["per"], body["one_horizon"]) == (1000, True)
+    rows = [
+        {key: row[key] if isinstance(row[key], str) else round(row[key]) for key in row if key != "event_is"}
+        for row in body["outcomes"]
+    ]
+    assert [
+        (r["name"], r["starting_risk"], r["held"], r["without"], r["with"], r["change"], r["low"], r["high"]) for r in rows
+    ] == [
+        ("Recurrence", "given", "risk_ratio", 80, 54, -26, -42, -4),
+        ("Irritation", "trial", "risk_difference", 56, 122, 66, 27, 106),
+    ]
+
+
+def test_outcomes_of_different_times_say_so(client: TestClient) -> None:
+    arms = {"intervention": {"events": 1, "total": 9}, "comparator": {"events": 2, "total": 9}}
+    answer = client.post("/api/v1/balance", json={"outcomes": [{**arms, "horizon": "1 year"}, arms], "per": 100})
+    assert answer.json()["one_horizon"] is False
+
+
+def test_error_in_balance(client: TestClient) -> None:
+    arms = {"intervention": {"events": 10, "total": 9}, "comparator": {"events": 2, "total": 9}}
+    answer = client.post("/api/v1/balance", json={"outcomes": [{**arms, "name": 7, "held": "nothing"}], "per": 0})
+    assert [(p["field"], p["message"]) for p in answer.json()["problems"]] == [
+        ("per", "1 or more is needed."),
+        ("outcomes[0].intervention.events", "10 events are more than the 9 people."),
+        ("outcomes[0].held", "This is none of the choices."),
+        ("outcomes[0].name", "Text of at most 400 characters is needed."),
+    ]
