@@ -105,10 +105,10 @@ def test_any_text_is_answered_and_its_spans_lie_within_it(text: str) -> None:
 
 @pytest.mark.parametrize(
     "piece",
-    ["1", "11% ", "RR 0.", "P=0.", "95% CI ", "12 of ", "1\t2 (3)\t4 (5)\n", "\ud800", "n=12 ", "(", "a 1 (2) 3 (4)\n\n"],
+    ["1", "11% ", "RR 0.", "1\t2 (3)\t4 (5)\n", "\ud800", "("],
 )
 def test_the_longest_passage_of_repeats_is_answered(piece: str) -> None:
-    """Every rule is linear on these; a square one would not end. The time is measured in tests/bench."""
+    """Every rule is linear on these; a square one would not end. The times are in DEVELOPERS.md."""
     reading = read((piece * (MOST // len(piece) + 1))[:MOST])
     assert len(reading.outcomes) <= 200
 
