@@ -83,8 +83,6 @@ FIGURES: dict[str, FigureKind] = {
 }
 """The further numbers a sheet can hold. A key, once released, is never renamed."""
 
-FIGURE_PARTS = ("kind", "value", "low", "high", "level", "basis", "place", "arm", "word", "label", "test")
-
 TEXT_LIMIT = 4000
 """Longest text kept of one field; longer is refused with a message."""
 

@@ -114,8 +114,7 @@ def sheet_from_form(form: Mapping[str, str], current: Sheet) -> Sheet:
     order = cast("ArmOrder", choice("arm_order", ARM_ORDERS, current.arm_order))
     if (passage, order) != (current.passage, current.arm_order):
         typed = fill(typed, passage, order)
-    shown = form.get("outcome", "0")
-    return assigned(typed, form, int(shown) if shown.isascii() and shown.isdigit() and len(shown) < 4 else 0)
+    return assigned(typed, form, place_in(form.get("outcome", "0")))
 
 
 def _figure_from_form(
@@ -143,10 +142,14 @@ def _figure_from_form(
     )
 
 
+def place_in(text: str) -> int:
+    """Which outcome a field of a form names; the first where it names none."""
+    return int(text) if text.isascii() and text.isdigit() and len(text) < 4 else 0
+
+
 def _asked_for(form: Mapping[str, str], outcomes: list[TypedOutcome]) -> list[TypedOutcome]:
     """The outcomes with an outcome or a further number added, or a number taken away, where a button asked for it."""
-    shown = form.get("outcome", "0")
-    place = int(shown) if shown.isascii() and shown.isdigit() and len(shown) < 4 else 0
+    place = place_in(form.get("outcome", "0"))
     if place >= len(outcomes):
         return outcomes
     if "add-outcome" in form and len(outcomes) < MOST_OUTCOMES:

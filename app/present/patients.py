@@ -165,7 +165,7 @@ def _picture(found: Patients, risks: Sequence[StartingRisk], names: Names) -> Ma
             continue
         change = constant.carried(held, grid).difference  # type: ignore[arg-type]
         points = tuple((x, sign * float(y)) for x, y in zip(grid, change, strict=True))
-        lines.append(Line(_SCALE_TEXT[held.scale], held.scale, points))
+        lines.append(Line(held.scale, points))
     ratio = next(h for h in found.held if h.scale == "risk_ratio")
     ends = constant.carried(ratio, grid)  # type: ignore[arg-type]
     band = tuple((x, sign * float(lo), sign * float(hi)) for x, lo, hi in zip(grid, ends.low, ends.high, strict=True))

@@ -16,7 +16,7 @@ from app.appraisal.run import appraise
 from app.appraisal.sheet import MOST_OUTCOMES, Sheet
 from app.errors import NotOnShelf, SaveConflict
 from app.intake.passage import ASSIGNABLE, reading_of, with_parts
-from app.intake.sheet import gather, needs, sheet_from_form
+from app.intake.sheet import gather, needs, place_in, sheet_from_form
 from app.present.pages import ConflictView, HomeView, SheetView, conflict_view, home_view, sheet_view, shelf_line
 from app.present.paper import PaperView, paper_view
 from app.reading.pages import differences, parts_of
@@ -57,8 +57,7 @@ class Posted:
         """The outcome the page is to show: the one asked for, the one just added, or the same."""
         if "add-outcome" in self.fields:
             return MOST_OUTCOMES
-        text = self.fields.get("show", self.fields.get("outcome", "0"))
-        return int(text) if text.isascii() and text.isdigit() and len(text) < 4 else 0
+        return place_in(self.fields.get("show", self.fields.get("outcome", "0")))
 
 
 @dataclass(frozen=True, slots=True)

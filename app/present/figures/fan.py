@@ -14,9 +14,8 @@ _LEFT, _RIGHT, _TOP, _BOTTOM, _WIDTH, _HEIGHT = 56.0, 14.0, 34.0, 46.0, 620.0, 3
 
 @dataclass(frozen=True, slots=True)
 class Line:
-    """One scale: its label and class, and (starting risk, change) along it; nan is left out."""
+    """One scale: its class, and (starting risk, change) along it; nan is left out."""
 
-    label: str
     kind: str
     points: tuple[tuple[float, float], ...]
 
