@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from app.api.answers import Json, number, versioned
-from app.appraisal.carry import held_from_counts
 from app.intake.balance import BalanceInput, BalanceOutcome
 from app.transport.constant import carried
 
@@ -21,11 +20,8 @@ def balance_answer(given: BalanceInput) -> Json:
 def _row(outcome: BalanceOutcome, per: int) -> Json:
     """At the trial's own risk the interval of the difference; at another the carried one, the risk taken as known."""
     own = outcome.baseline_risk is None
-    start = outcome.comparator_risk
     held = outcome.held
-    if own:
-        held = next(h for h in held_from_counts(outcome.table, outcome.level) if h.scale == "risk_difference")
-    risk = start if outcome.baseline_risk is None else outcome.baseline_risk
+    risk = outcome.comparator_risk if outcome.baseline_risk is None else outcome.baseline_risk
     found = carried(held, risk)
     with_it, difference, low, high = (float(x) for x in (found.risk_with, found.difference, found.low, found.high))
     if own:

@@ -9,7 +9,6 @@ from app.appraisal.carry import held_from_counts, own_risk
 from app.appraisal.sheet import EventIs
 from app.intake.body import SAID, Body
 from app.intake.counts import ARM_NAMES, table_of
-from app.measures.fourfold import Fourfold
 from app.transport.constant import SCALES, Held, Scale
 
 _MOST = 60
@@ -18,15 +17,13 @@ _LONGEST = 400
 
 @dataclass(frozen=True, slots=True)
 class BalanceOutcome:
-    """One outcome: its name, time, counts, the scale held, and the starting risk, None for the trial's own."""
+    """One outcome: its name and time, the effect held, the starting risk (None for the trial's own), and the trial's."""
 
     name: str
     horizon: str | None
     event_is: EventIs
-    table: Fourfold
     held: Held
     baseline_risk: float | None
-    level: float
     comparator_risk: float
 
 
@@ -58,12 +55,12 @@ def balance_input(given: Any) -> BalanceInput:
 def _outcome(body: Body, level: float) -> BalanceOutcome:
     table = table_of(body)
     scale: Scale = body.choice("held", SCALES, "risk_ratio")
-    held = next(h for h in held_from_counts(table, level) if h.scale == scale)
     risk = body.number("baseline_risk", 0.0, 1.0) if body.has("baseline_risk") else None
-    name = _text(body, "name") or ""
-    return BalanceOutcome(
-        name, _text(body, "horizon"), body.choice("event_is", SAID, "unwanted"), table, held, risk, level, own_risk(table)
-    )
+    if risk is None:
+        scale = "risk_difference"  # at the trial's own risk all scales agree; this one's interval is shown
+    held = next(h for h in held_from_counts(table, level) if h.scale == scale)
+    event_is = body.choice("event_is", SAID, "unwanted")
+    return BalanceOutcome(_text(body, "name") or "", _text(body, "horizon"), event_is, held, risk, own_risk(table))
 
 
 def _text(body: Body, field: str) -> str | None:
